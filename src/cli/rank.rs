@@ -5,7 +5,7 @@ use super::typed::{Common, FormatWord};
 use super::{CliError, Outcome, read_settings};
 use crate::rating::rank_players;
 use crate::report::players_table;
-use crate::store::{PursuitRow, each_game, read_audit_info};
+use crate::store::{PursuitRow, read_all, read_audit_info};
 use clap::Args;
 use std::path::{Path, PathBuf};
 
@@ -62,8 +62,8 @@ impl Choice {
     /// # Errors
     /// When a table cannot be read.
     pub fn read(&self, out: &Path) -> Result<Vec<PursuitRow>, CliError> {
-        let mut rows = Vec::new();
-        each_game(out, |game: Vec<PursuitRow>| rows.extend(game.into_iter().filter(|row| self.takes(row))))?;
+        let mut rows: Vec<PursuitRow> = read_all(out)?;
+        rows.retain(|row| self.takes(row));
         Ok(rows)
     }
 }

@@ -1,6 +1,6 @@
 //! An invented game: what the tags saw and what really was.
 
-use super::carrying::CarryStop;
+use super::carrying::{CarryStop, StageCarry};
 use super::event::DemoEvent;
 use super::kind::PlayKind;
 use super::league::{Athlete, League, club_count, pairing};
@@ -90,12 +90,15 @@ pub fn generate_game(index: usize, options: &DemoOptions) -> DemoGame {
         home_has_ball ^= draws.chance(1.0 / 6.0);
         let second_half = 2 * k >= options.plays_per_game;
         let setup = Setup {
+            athletes: &athletes,
+            home_size,
+            options,
             unit: format!("game {index} play {k}"),
             id: number.to_string().into(),
             home_has_ball,
             turned: opening_turned ^ second_half ^ home_has_ball,
         };
-        plays.push(generate_play(&setup, &athletes, home_size, options));
+        plays.push(generate_play(&setup));
         number += 18 + draws.below(12);
     }
     DemoGame {
@@ -110,16 +113,21 @@ pub fn generate_game(index: usize, options: &DemoOptions) -> DemoGame {
     }
 }
 
-struct Setup {
+/// What one play needs to be made.
+struct Setup<'a> {
+    athletes: &'a [Athlete],
+    home_size: usize,
+    options: &'a DemoOptions,
     unit: String,
     id: Arc<str>,
     home_has_ball: bool,
     turned: bool,
 }
 
-fn generate_play(setup: &Setup, athletes: &[Athlete], home_size: usize, options: &DemoOptions) -> DemoPlay {
+fn generate_play(setup: &Setup) -> DemoPlay {
+    let options = setup.options;
     let mut draws = Stream::new(options.seed, &setup.unit);
-    let (home, away) = athletes.split_at(home_size);
+    let (home, away) = setup.athletes.split_at(setup.home_size);
     let (attack, defend) = if setup.home_has_ball { (home, away) } else { (away, home) };
     let teams = Teams { attack, defend, attack_home: setup.home_has_ball };
     let kind = PlayKind::drawn(&mut draws);
@@ -146,21 +154,12 @@ fn generate_play(setup: &Setup, athletes: &[Athlete], home_size: usize, options:
     let over_s = stage.now_s();
     let runs_on_s = if stage.draws.chance(0.2) { stage.draws.between(0.1, 1.2) } else { 0.0 };
     stage.run_for(runs_on_s);
-    told(setup, kind, line_yd, &stage, &carries, over_s, athletes, options)
+    told(setup, kind, line_yd, &stage, &carries, over_s)
 }
 
 /// Puts what the stage recorded into the order of a file.
-#[expect(clippy::too_many_arguments, reason = "one caller; the pieces of one play")]
-fn told(
-    setup: &Setup,
-    kind: PlayKind,
-    line_yd: f64,
-    stage: &Stage,
-    carries: &[super::carrying::StageCarry],
-    over_s: f64,
-    athletes: &[Athlete],
-    options: &DemoOptions,
-) -> DemoPlay {
+fn told(setup: &Setup, kind: PlayKind, line_yd: f64, stage: &Stage, carries: &[StageCarry], over_s: f64) -> DemoPlay {
+    let (athletes, options) = (setup.athletes, setup.options);
     let recorder = &stage.recorder;
     let frames = recorder.frames();
     let player_frames = recorder.frame_at(over_s).clamp(1, frames);

@@ -6,6 +6,9 @@ use super::number::{Read, number};
 /// Stands for "no time" in a row.
 pub(crate) const NO_TIME: i64 = i64::MIN;
 
+/// Times beyond some thirty thousand years are no times; differences of two that are not stay whole numbers.
+pub(crate) const FURTHEST_US: i64 = 1_000_000_000_000_000_000;
+
 /// Microseconds of a time field: `Ok(NO_TIME)` where it is missing, `Err` where it is no time.
 /// A number is seconds unless the form says milliseconds; a text with a colon is a clock, with or without a date.
 #[inline]
@@ -25,7 +28,7 @@ pub(crate) fn time_us(field: &[u8], form: Option<TimeForm>) -> Result<i64, ()> {
 
 pub(crate) fn of_number(value: f64, form: Option<TimeForm>) -> Result<i64, ()> {
     let us = value * if form == Some(TimeForm::Milliseconds) { 1e3 } else { 1e6 };
-    if us.abs() < 9e18 { Ok(us.round() as i64) } else { Err(()) }
+    if us.abs() < FURTHEST_US as f64 { Ok(us.round() as i64) } else { Err(()) }
 }
 
 /// The most usual stamp, `yyyy-mm-ddThh:mm:ss` with or without a fraction and `Z`, at fixed places; any other text is
@@ -67,7 +70,7 @@ fn of_clock(text: &[u8]) -> Option<i64> {
     let mut fraction_us = 0;
     loop {
         let cut = rest.iter().position(|b| !b.is_ascii_digit()).unwrap_or(rest.len());
-        if cut == 0 || cut > 9 || count == 3 {
+        if cut == 0 || cut > 5 || count == 3 {
             return None;
         }
         parts[count] = whole(&rest[..cut]);

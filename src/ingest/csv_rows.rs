@@ -3,7 +3,7 @@
 use super::clock::time_us;
 use super::csv_text::{CsvText, shown};
 use super::number::{Read, is_missing, number};
-use super::row::{Codes, ColumnCoder, NO_FRAME, RawRow, RowSink};
+use super::row::{Codes, ColumnCoder, FURTHEST_FRAME, NO_FRAME, RawRow, RowSink};
 use super::scan::Span;
 use super::texts::Texts;
 use super::units::Conversion;
@@ -108,7 +108,7 @@ impl Plan {
         };
         if let Some(i) = self.frame {
             raw.frame = match number(field(i)) {
-                Read::Number(v) if v == v.trunc() && v.abs() < 9e15 => v as i64,
+                Read::Number(v) if v == v.trunc() && v.abs() <= FURTHEST_FRAME as f64 => v as i64,
                 Read::Missing => NO_FRAME,
                 _ => return Err(self.bad(i, row, field(i), "a whole number")),
             };

@@ -46,6 +46,11 @@ impl CsvText {
         Ok(text)
     }
 
+    /// Whether anything follows the header.
+    pub fn has_rows(&self) -> bool {
+        !(self.is_last && self.text[self.at..].trim_ascii().is_empty())
+    }
+
     fn header(&mut self) -> Result<(), IngestError> {
         if self.text.starts_with(&[0xff, 0xfe]) || self.text.starts_with(&[0xfe, 0xff]) {
             return Err(self.not_utf8("the header", "UTF-16"));
@@ -67,7 +72,7 @@ impl CsvText {
                     self.at = (end + 1).min(self.text.len());
                     break;
                 }
-                _ if self.is_last || self.text.len() > LONGEST_RECORD => {
+                _ if self.is_last || self.text.len() >= LONGEST_RECORD => {
                     return Err(IngestError::UnclosedQuote { path: self.path.clone(), row: 0, column: "of the header".into() });
                 }
                 _ => self.refill()?,
@@ -165,7 +170,7 @@ impl CsvText {
                 on_record(self.row, &self.text, &spans)?;
             }
             start = self.text.len();
-        } else if open && self.text.len() - start > LONGEST_RECORD {
+        } else if open && self.text.len() - start >= LONGEST_RECORD {
             self.quoted(start, &mut spans)?;
         }
         self.at = start;
@@ -191,7 +196,7 @@ impl CsvText {
     fn quoted(&mut self, start: usize, spans: &mut Vec<Span>) -> Result<Option<usize>, IngestError> {
         match quoted_record(&self.text, start, self.separator, self.is_last, &mut self.unquoted, spans) {
             Quoted::Ends(end) => Ok(Some(end)),
-            Quoted::Open(field) if self.is_last || self.text.len() - start > LONGEST_RECORD => {
+            Quoted::Open(field) if self.is_last || self.text.len() - start >= LONGEST_RECORD => {
                 let column = self.columns.get(field).cloned().unwrap_or_else(|| (field + 1).to_string());
                 Err(IngestError::UnclosedQuote { path: self.path.clone(), row: self.row + 1, column })
             }
@@ -207,6 +212,9 @@ impl CsvText {
     fn refill(&mut self) -> Result<(), IngestError> {
         self.text.drain(..self.at);
         self.at = 0;
+        if self.text.len() >= LONGEST_RECORD {
+            return Err(IngestError::LongRecord { path: self.path.clone(), row: self.row + 1 });
+        }
         let room = BLOCK.max(self.text.len());
         let before = self.text.len();
         let read =

@@ -40,6 +40,8 @@ pub enum IngestError {
     FieldCount { path: PathBuf, row: u64, expected: usize, found: usize },
     #[error("{}, row {row}, column {column}: expected a closing quote, found the end of the file (close the quote that opens there)", path.display())]
     UnclosedQuote { path: PathBuf, row: u64, column: String },
+    #[error("{}, row {row}: expected a line end within 64 MiB, found none (check that this is a text file)", path.display())]
+    LongRecord { path: PathBuf, row: u64 },
     #[error("{}, row {row}, column {column}: expected UTF-8 text, found {found} (save the file as UTF-8)", path.display())]
     NotUtf8 { path: PathBuf, row: u64, column: String, found: String },
     #[error("{}: expected a whole Parquet file, found one that is cut short or damaged: {found} (copy or export it again)", path.display())]

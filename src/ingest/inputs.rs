@@ -21,30 +21,32 @@ impl InputSet {
         let (mut files, mut skipped) = (BTreeSet::new(), BTreeSet::new());
         let tables: Vec<PathBuf> = tables.iter().map(|t| canonical(t)).collect();
         for path in paths {
-            let before = files.len();
+            let mut found_here = BTreeSet::new();
             if path.is_file() {
-                files.insert(path.clone());
-                continue;
-            }
-            if path.is_dir() {
-                walk(path, &mut files, &mut skipped, 0)?;
+                found_here.insert(path.clone());
+            } else if path.is_dir() {
+                walk(path, &mut found_here, &mut skipped, 0)?;
             } else {
                 for found in by_pattern(path)? {
                     if found.is_dir() {
-                        walk(&found, &mut files, &mut skipped, 0)?;
+                        walk(&found, &mut found_here, &mut skipped, 0)?;
                     } else {
-                        sort_in(found, &mut files, &mut skipped);
+                        sort_in(found, &mut found_here, &mut skipped);
                     }
                 }
             }
-            files.retain(|f| !tables.contains(&canonical(f)));
-            if files.len() == before && files.iter().all(|f| !f.starts_with(path)) {
+            found_here.retain(|f| !tables.contains(&canonical(f)));
+            if found_here.is_empty() {
                 let names: Vec<String> = skipped.iter().take(5).map(|p: &PathBuf| p.display().to_string()).collect();
                 let skipped = if names.is_empty() { String::new() } else { format!("; left out by name: {}", names.join(", ")) };
                 return Err(IngestError::NoData { path: path.clone(), skipped });
             }
+            files.append(&mut found_here);
         }
         skipped.retain(|s| !files.contains(s) && !tables.contains(&canonical(s)));
+        // One file by two names is one file.
+        let mut known = BTreeSet::new();
+        files.retain(|f| known.insert(canonical(f)));
         let first = paths.first().cloned().unwrap_or_default();
         if files.is_empty() {
             return Err(IngestError::NoData { path: first, skipped: String::new() });

@@ -98,8 +98,9 @@ pub fn inspect(paths: &[PathBuf], options: &IngestOptions, settings: &Settings) 
     {
         out.problems.push(error.to_string());
     }
-    out.notes = notes(&out, &mapping, &spread, &mapping.field(settings.field()));
-    out.mapping_toml = super::inspect_text::mapping_toml(&mapping, first_matching.as_ref(), &out.sample);
+    let field = mapping.field(settings.field());
+    out.notes = notes(&out, &mapping, &spread, &field);
+    out.mapping_toml = super::inspect_text::mapping_toml(&mapping, first_matching.as_ref(), &out.sample, &field);
     Ok(out)
 }
 

@@ -4,6 +4,7 @@ use super::events::word_of_mark;
 use super::inspect::{Inspection, Sample};
 use super::mapping::{DistanceUnit, HeadingForm, Origin, SpeedUnit, TimeForm};
 use super::{Logical, Mapping, Matching};
+use crate::model::Field;
 use std::fmt::Write;
 
 impl Inspection {
@@ -61,7 +62,7 @@ fn quoted(text: &str) -> String {
 }
 
 /// A mapping file that says what was understood; what is not known stands in comments.
-pub(crate) fn mapping_toml(mapping: &Mapping, matching: Option<&Matching>, sample: &Sample) -> String {
+pub(crate) fn mapping_toml(mapping: &Mapping, matching: Option<&Matching>, sample: &Sample, field: &Field) -> String {
     let mut out = String::new();
     let mut set = |name: &str, value: Option<String>, default: &str, choices: &str| match value {
         Some(value) => line(&mut out, format_args!("{name} = {value}  # {choices}")),
@@ -122,13 +123,13 @@ pub(crate) fn mapping_toml(mapping: &Mapping, matching: Option<&Matching>, sampl
         );
     }
     line(&mut out, format_args!("\n[field]"));
-    for (name, value) in
-        [("length_yd", mapping.field.length_yd), ("width_yd", mapping.field.width_yd), ("end_zone_yd", mapping.field.end_zone_yd)]
-    {
-        match value {
-            Some(v) => line(&mut out, format_args!("{name} = {v:?}")),
-            None => line(&mut out, format_args!("# {name} = (as in the settings)")),
-        }
+    let own = mapping.field;
+    for (name, told, taken) in [
+        ("length_yd", own.length_yd, field.length_yd),
+        ("width_yd", own.width_yd, field.width_yd),
+        ("end_zone_yd", own.end_zone_yd, field.end_zone_yd),
+    ] {
+        line(&mut out, format_args!("{}{name} = {taken:?}", if told.is_some() { "" } else { "# " }));
     }
     out
 }

@@ -73,6 +73,9 @@ impl Matching {
     }
 }
 
+/// A column that no mapping takes: place, normal form, and name and unit where the name ends in a unit.
+type Free = (usize, String, Option<(String, &'static str)>);
+
 /// Lower case, letters and digits only.
 pub(crate) fn normal(name: &str) -> String {
     name.chars().filter(|c| c.is_alphanumeric()).flat_map(char::to_lowercase).collect()
@@ -131,7 +134,7 @@ pub(crate) fn understand(columns: &[String], mapping: &Mapping, path: &Path) -> 
         put(&mut out, *logical, index, How::Mapped, None);
     }
     let taken: Vec<usize> = out.matched().map(|m| m.index).collect();
-    let free: Vec<(usize, String, Option<(String, &'static str)>)> =
+    let free: Vec<Free> =
         columns.iter().enumerate().filter(|(i, _)| !taken.contains(i)).map(|(i, c)| (i, normal(c), without_unit(c))).collect();
     for logical in Logical::ALL.into_iter().filter(|l| !mapping.columns.contains_key(l)) {
         for (grade, names) in logical.grades().iter().enumerate() {
@@ -173,7 +176,7 @@ fn put(out: &mut Matching, logical: Logical, index: usize, how: How, unit: Optio
 }
 
 /// The last resort for who a row is about: the only column left whose name ends in "id" or is "tag".
-fn guess(out: &mut Matching, free: &[(usize, String, Option<(String, &'static str)>)], mapping: &Mapping) {
+fn guess(out: &mut Matching, free: &[Free], mapping: &Mapping) {
     if out.has(Logical::Mover) || mapping.columns.contains_key(&Logical::Mover) {
         return;
     }

@@ -4,7 +4,7 @@
 use super::IngestError;
 use polars::io::parquet::read::_internal::to_deserializer;
 use polars::io::prelude::FileMetadata;
-use polars::prelude::{ArrayRef, ArrowDataType, ArrowField, ArrowTimeUnit, ParquetReader, SerReader};
+use polars::prelude::{ArrayRef, ArrowDataType, ArrowDataType as A, ArrowField, ArrowTimeUnit, ParquetReader, SerReader};
 use std::fs::File;
 use std::io::{Read, Seek, SeekFrom};
 use std::panic::{AssertUnwindSafe, catch_unwind};
@@ -44,10 +44,17 @@ impl ParquetFile {
         let again = file.try_clone().map_err(|e| IngestError::unreadable(path, &e))?;
         let (footer, fields) = guarded(path, || {
             let mut footer = (**ParquetReader::new(again).get_metadata()?).clone();
+            let told = polars::io::parquet::read::infer_schema(&footer)?;
             // Without the writer's own schema every column comes as the plain type that is stored.
             footer.key_value_metadata = None;
             let schema = polars::io::parquet::read::infer_schema(&footer)?;
-            let fields = schema.iter_values().cloned().collect();
+            let mut fields: Vec<ArrowField> = schema.iter_values().cloned().collect();
+            // Spans of time are stored as bare whole numbers: only the writer's schema tells what they count.
+            for field in &mut fields {
+                if let Some(A::Duration(unit)) = told.get(&field.name).map(|f| &f.dtype) {
+                    field.dtype = A::Duration(*unit);
+                }
+            }
             Ok((footer, fields))
         })?;
         Ok(ParquetFile { path: path.to_path_buf(), file, footer, fields })
@@ -71,7 +78,6 @@ impl ParquetFile {
 
     /// What a column stores; an error for lists, structures and raw bytes of fixed length.
     pub fn stored(&self, column: usize, expected: &'static str) -> Result<Stored, IngestError> {
-        use ArrowDataType as A;
         let per_s = |unit: &ArrowTimeUnit| match unit {
             ArrowTimeUnit::Second => 1.0,
             ArrowTimeUnit::Millisecond => 1e3,
@@ -94,7 +100,7 @@ impl ParquetFile {
                 debug_assert!(*unit == ArrowTimeUnit::Nanosecond);
                 Stored::Stamp96
             }
-            A::Timestamp(unit, _) => Stored::Time64(per_s(unit)),
+            A::Timestamp(unit, _) | A::Duration(unit) => Stored::Time64(per_s(unit)),
             A::Date32 => Stored::Date,
             other => {
                 let found = format!("{other:?}").split(['(', '{']).next().unwrap_or_default().to_lowercase();

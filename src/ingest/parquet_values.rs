@@ -1,10 +1,10 @@
 //! Decoded Parquet columns to plain vectors: numbers, whole numbers, times, codes.
 
-use super::clock::{NO_TIME, of_number, time_us};
+use super::clock::{FURTHEST_US, NO_TIME, of_number, time_us};
 use super::mapping::TimeForm;
 use super::number::{Read, number};
 use super::parquet_file::Stored;
-use super::row::{ColumnCoder, NO_FRAME};
+use super::row::{ColumnCoder, FURTHEST_FRAME, NO_FRAME};
 use super::texts::{Coder, NONE, Texts};
 use polars::prelude::{
     ArrayRef, BooleanType, Float32Type, Float64Type, Int32Type, Int64Type, PolarsDataType, StringType, UInt32Type, UInt64Type,
@@ -45,9 +45,11 @@ pub(crate) fn reals(arrays: &[ArrayRef], stored: Stored, out: &mut Vec<f64>) -> 
         Stored::UInt64 => each_number!(arrays, UInt64Type, |v: Option<u64>| out.push(v.map_or(f64::NAN, |v| v as f64))),
         Stored::Text => {
             return each_text(arrays, |row, text| match text.map_or(Read::Missing, |t| number(t.as_bytes())) {
-                Read::Number(v) => Ok(out.push(v)),
-                Read::Missing => Ok(out.push(f64::NAN)),
                 Read::Text => Err((row, text.unwrap_or_default().to_string())),
+                read => {
+                    out.push(if let Read::Number(v) = read { v } else { f64::NAN });
+                    Ok(())
+                }
             });
         }
         Stored::Truth => return Err((0, "true or false".into())),
@@ -72,14 +74,20 @@ pub(crate) fn wholes(arrays: &[ArrayRef], stored: Stored, out: &mut Vec<i64>) ->
     match stored {
         Stored::Int32 => each_number!(arrays, Int32Type, |v: Option<i32>| out.push(v.map_or(NO_FRAME, i64::from))),
         Stored::UInt32 => each_number!(arrays, UInt32Type, |v: Option<u32>| out.push(v.map_or(NO_FRAME, i64::from))),
-        Stored::Int64 => each_number!(arrays, Int64Type, |v: Option<i64>| out.push(v.unwrap_or(NO_FRAME))),
+        Stored::Int64 => {
+            each_number!(arrays, Int64Type, |v: Option<i64>| out.push(v.unwrap_or(NO_FRAME)));
+            let beyond = |v: &i64| *v != NO_FRAME && v.unsigned_abs() > FURTHEST_FRAME as u64;
+            if let Some(row) = out.iter().position(beyond) {
+                return Err((row, out[row].to_string()));
+            }
+        }
         _ => {
             let mut numbers = Vec::new();
             reals(arrays, stored, &mut numbers)?;
             for (row, v) in numbers.iter().enumerate() {
                 match *v {
                     v if v.is_nan() => out.push(NO_FRAME),
-                    v if v == v.trunc() && v.abs() < 9e15 => out.push(v as i64),
+                    v if v == v.trunc() && v.abs() <= FURTHEST_FRAME as f64 => out.push(v as i64),
                     v => return Err((row, v.to_string())),
                 }
             }
@@ -91,7 +99,10 @@ pub(crate) fn wholes(arrays: &[ArrayRef], stored: Stored, out: &mut Vec<i64>) ->
 /// Times in microseconds, [`NO_TIME`] where missing.
 pub(crate) fn times(arrays: &[ArrayRef], stored: Stored, form: Option<TimeForm>, out: &mut Vec<i64>) -> Result<(), Misfit> {
     out.clear();
-    let counted = |v: i64, per_s: f64| if per_s > 1e6 { v.div_euclid(1000) } else { v.saturating_mul((1e6 / per_s) as i64) };
+    let counted = |v: i64, per_s: f64| {
+        let us = if per_s > 1e6 { v.div_euclid(1000) } else { v.saturating_mul((1e6 / per_s) as i64) };
+        if us.unsigned_abs() < FURTHEST_US as u64 { us } else { NO_TIME }
+    };
     match stored {
         Stored::Time64(per_s) => each_number!(arrays, Int64Type, |v: Option<i64>| out.push(v.map_or(NO_TIME, |v| counted(v, per_s)))),
         Stored::Stamp96 => each_number!(arrays, Int64Type, |v: Option<i64>| out.push(v.map_or(NO_TIME, |v| counted(v, 1e9)))),
@@ -100,7 +111,10 @@ pub(crate) fn times(arrays: &[ArrayRef], stored: Stored, form: Option<TimeForm>,
         }
         Stored::Text => {
             return each_text(arrays, |row, text| match time_us(text.unwrap_or_default().as_bytes(), form) {
-                Ok(us) => Ok(out.push(us)),
+                Ok(us) => {
+                    out.push(us);
+                    Ok(())
+                }
                 Err(()) => Err((row, text.unwrap_or_default().to_string())),
             });
         }
@@ -136,7 +150,7 @@ pub(crate) fn codes(arrays: &[ArrayRef], stored: Stored, coder: &mut ColumnCoder
                 for v in numbers {
                     out.push(match v {
                         v if v.is_nan() => NONE,
-                        v if v == v.trunc() && v.abs() < 9e15 => whole(Some(v as i64), coder, texts),
+                        v if v == v.trunc() && v.abs() <= FURTHEST_FRAME as f64 => whole(Some(v as i64), coder, texts),
                         v => texts.code(&v.to_string()),
                     });
                 }

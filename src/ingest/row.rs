@@ -8,6 +8,9 @@ use crate::model::SourceRow;
 /// Stands for "no frame number" in a row.
 pub(crate) const NO_FRAME: i64 = i64::MIN;
 
+/// Whole numbers beyond this are no frames and no ids that a float column left; up to it a float is exact.
+pub(crate) const FURTHEST_FRAME: i64 = 1 << 53;
+
 /// A row of the input; missing numbers are NaN, missing texts [`NONE`].
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub(crate) struct Row {

@@ -97,17 +97,24 @@ pub fn open(paths: &[PathBuf], options: &IngestOptions, settings: &Settings) -> 
 pub(crate) fn open_file(path: &Path, mapping: &Mapping) -> Result<InputFile, IngestError> {
     let is_parquet = super::bytes::is_parquet(path).map_err(|e| IngestError::unreadable(path, &e))?;
     let named_parquet = path.extension().is_some_and(|e| e.eq_ignore_ascii_case("parquet"));
+    let has_rows;
     let (format, columns, rows) = if is_parquet || named_parquet {
         if std::fs::metadata(path).is_ok_and(|m| m.len() == 0) {
             return Err(IngestError::EmptyFile { path: path.to_path_buf() });
         }
         let file = ParquetFile::open(path)?;
+        has_rows = file.rows() > 0;
         (Format::Parquet, file.columns(), Some(file.rows()))
     } else {
-        (Format::Text, CsvText::open(path)?.columns, None)
+        let text = CsvText::open(path)?;
+        has_rows = text.has_rows();
+        (Format::Text, text.columns, None)
     };
     let matching = understand(&columns, mapping, path)?;
     require(&matching, path)?;
+    if !has_rows {
+        return Err(IngestError::HeaderOnly { path: path.to_path_buf() });
+    }
     InputFile::new(path.to_path_buf(), format, matching, rows)
 }
 

@@ -53,8 +53,8 @@ pub(crate) fn direction(text: &str) -> i8 {
 
 /// Whether an id, name, side or position means the ball; `more` are further texts for it, lower case.
 pub(crate) fn means_ball(text: &str, more: &[String]) -> bool {
-    let text = text.to_lowercase();
-    matches!(text.as_str(), "ball" | "football" | "the ball") || more.contains(&text)
+    let is_usual = ["ball", "football", "the ball"].iter().any(|word| text.eq_ignore_ascii_case(word));
+    is_usual || (!more.is_empty() && more.contains(&text.to_lowercase()))
 }
 
 /// A carrier mark that is a yes or a no rather than an id.

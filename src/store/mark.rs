@@ -3,7 +3,7 @@
 
 use super::folders::{entries, folder_name, game_folder, name_of};
 use super::{FindingEntry, RowAccount, StoreError, write_text};
-use serde::{Deserialize, Serialize};
+use serde::{Deserialize, Serialize, Serializer};
 use std::collections::BTreeMap;
 use std::fs;
 use std::path::{Path, PathBuf};
@@ -34,8 +34,17 @@ pub struct GameMark {
 /// The measurement noise and jerk density that the smoother worked with.
 #[derive(Clone, Copy, Debug, PartialEq, Serialize, Deserialize)]
 pub struct NoiseEntry {
+    #[serde(serialize_with = "twelve_digits")]
     pub jerk_density_yd2ps5: f64,
+    #[serde(serialize_with = "twelve_digits")]
     pub sigma_yd: f64,
+}
+
+/// JSON's reader gives back up to 15 digits exactly, more of them only nearly; a number that is read and written again
+/// must not creep, or an audit that was resumed would differ from one that was not.
+fn twelve_digits<S: Serializer>(value: &f64, out: S) -> Result<S::Ok, S::Error> {
+    let rounded: f64 = format!("{value:.11e}").parse().unwrap_or(*value);
+    out.serialize_f64(rounded)
 }
 
 impl GameMark {

@@ -145,8 +145,20 @@ fn first_missing(column: &Column) -> Option<usize> {
 /// As [`read_table`], for the first game that fails.
 pub fn read_all<R: Row>(out_dir: &Path) -> Result<Vec<R>, StoreError> {
     let mut all = Vec::new();
+    // The rows are wide: growing by doubling would cost as much again.
+    all.reserve_exact(rows_of_all_games(out_dir, R::TABLE)?);
     each_game(out_dir, |mut rows: Vec<R>| all.append(&mut rows))?;
     Ok(all)
+}
+
+/// Rows of a table over all games, from the files' ends alone.
+fn rows_of_all_games(out_dir: &Path, table: &str) -> Result<usize, StoreError> {
+    let height = |path: &Path| {
+        let file = File::open(path).map_err(StoreError::io(path, "open the file"))?;
+        // A damaged file is told of when it is read.
+        Ok(catch_unwind(move || pl::ParquetReader::new(file).num_rows().unwrap_or(0)).unwrap_or(0))
+    };
+    game_files(out_dir, table)?.iter().map(|path| height(path)).sum()
 }
 
 /// Hands over one game's rows after the other, in order of folder name, so that a season needs no more memory than a game.

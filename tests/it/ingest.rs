@@ -396,14 +396,14 @@ fn small(header: &str, cell: impl Fn(usize, i64) -> String) -> String {
 
 #[test]
 fn carriers_balls_and_missing_columns() {
-    let by_id = read_text(&small("time,carrier", |_, f| format!("{},{}", f as f64 * 0.1, if f > 2 { "1.0" } else { "" })), &IngestOptions::default());
+    let by_id = read_text(
+        &small("time,carrier", |_, f| format!("{},{}", f as f64 * 0.1, if f > 2 { "1.0" } else { "" })),
+        &IngestOptions::default(),
+    );
     let marks: Vec<(u32, u32)> = (3..8).map(|f| (f, 1)).collect();
     assert_eq!(by_id[0].plays[0].hints.carrier_marks, marks);
     assert_eq!(&*by_id[0].id, "game", "the file's name");
-    let by_truth = read_text(
-        &small("time,has_ball", |w, f| format!("{},{}", f as f64 * 0.1, f > 2 && w == 1)),
-        &IngestOptions::default(),
-    );
+    let by_truth = read_text(&small("time,has_ball", |w, f| format!("{},{}", f as f64 * 0.1, f > 2 && w == 1)), &IngestOptions::default());
     assert_eq!(by_truth[0].plays[0].hints.carrier_marks, marks);
     let columns = read_text(&small("time,ballX,ballY", |_, f| format!("{},{},7", f as f64 * 0.1, 40 + f)), &IngestOptions::default());
     let ball = columns[0].plays[0].ball.as_ref().unwrap();
@@ -452,7 +452,10 @@ fn tables_of_plays_players_and_film() {
     };
     let games = read_with(&[folder.path()], &options).unwrap();
     let play = &games[0].plays[0];
-    assert_eq!((play.hints.carrier, play.hints.kind.as_deref(), play.hints.attack), (Some(2), Some("kick, return"), Some(Attack::TowardsMinusX)));
+    assert_eq!(
+        (play.hints.carrier, play.hints.kind.as_deref(), play.hints.attack),
+        (Some(2), Some("kick, return"), Some(Attack::TowardsMinusX))
+    );
     assert_eq!(play.hints.film_start_s, Some(30.0));
     assert_eq!((play.movers[0].name.as_deref(), play.movers[0].position.as_deref()), (Some("Ada \"Bo\" Kern"), Some("FS")));
     assert_eq!(InputSet::collect(&[folder.path()], &[]).unwrap().files, [tracks]);
@@ -533,4 +536,30 @@ fn rows_without_a_game_are_accounted_for() {
     }
     assert_eq!((rows, source.gameless().account.rows_read), (4 * 23 * 12 - 3, 3));
     assert_eq!(source.files()[0].content_hash().unwrap().len(), 32);
+}
+
+#[test]
+fn packed_files_cut_short_and_files_that_are_no_text_are_errors() {
+    let none = IngestOptions::default();
+    let mut gz = flate2::write::GzEncoder::new(Vec::new(), flate2::Compression::fast());
+    gz.write_all(plain(&lines()).as_bytes()).unwrap();
+    let whole = gz.finish().unwrap();
+    let text = error("game.csv.gz", &whole[..whole.len() / 2], &none);
+    assert!(text.starts_with("game.csv.gz: expected a file that can be read, found: "), "{text}");
+    let noise = [b"play,frame,time,player,x,y\n".to_vec(), vec![b'x'; 140 << 20]].concat();
+    insta::assert_snapshot!(error("game.csv", noise, &none), @"game.csv, row 1: expected a line end within 64 MiB, found none (check that this is a text file)");
+    // Numbers at the end of what they can hold lose no row and stop nothing.
+    let wild = "play,frame,time,player,x,y\n1,9000000000000000,1e11,7,1e300,-1e300\n1,-9000000000000000,-1e11,7,3,4\n";
+    assert_eq!(read_text(wild, &none)[0].account.in_plays, 2);
+    assert!(read_with(&[Folder::new().path().join("*.csv")], &none).is_err());
+}
+
+#[test]
+fn one_file_by_two_names_is_read_once() {
+    let folder = Folder::new();
+    let path = folder.put("game.csv", plain(&lines()));
+    let other = folder.path().join("sub/../game.csv");
+    fs::create_dir(folder.path().join("sub")).unwrap();
+    let games = read_with(&[path, other, folder.path(), folder.path().join("*.csv")], &IngestOptions::default()).unwrap();
+    assert_eq!(games[0].account.rows_read, 2 * 23 * 12);
 }

@@ -6,7 +6,7 @@ use tailchase::rating::{Ranking, rank};
 use tailchase::store::PlayerRow;
 
 fn quick() -> RatingSettings {
-    RatingSettings { draws: 200, ..RatingSettings::default() }
+    RatingSettings { draws: 200, too_few: 1, ..RatingSettings::default() }
 }
 
 fn correlation(pairs: &[(f64, f64)]) -> f64 {

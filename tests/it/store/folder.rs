@@ -6,9 +6,9 @@ use std::fs;
 use std::path::{Path, PathBuf};
 use tailchase::model::{FindingKind, Findings, SetAside, Settings};
 use tailchase::store::{
-    AuditInfo, CarryRow, FrameRow, GameMark, GameTables, InputEntry, PursuitRow, RowAccount, RunInfo, Staged, StoreError, decode_id,
-    encode_id, finding_entries, fingerprint, game_files, game_folder, mark_path, merge_findings, prepare_out, prune_games, read_all,
-    read_audit_info, read_marks, read_table, write_audit_info, write_game, write_mark, write_text,
+    AuditInfo, CarryRow, FrameRow, GameMark, GameTables, InputEntry, NoiseEntry, PursuitRow, RowAccount, RunInfo, Staged, StoreError,
+    decode_id, encode_id, finding_entries, fingerprint, game_files, game_folder, mark_path, merge_findings, prepare_out, prune_games,
+    read_all, read_audit_info, read_marks, read_table, write_audit_info, write_game, write_mark, write_text,
 };
 
 #[test]
@@ -239,6 +239,22 @@ fn audit_json_sums_up_all_games_and_balances() {
     assert!(error.contains("expected an audit's folder with audit.json, found none (run `tailchase audit FILES --out "), "{error}");
     fs::write(dir.path().join("audit.json"), "{}").unwrap();
     assert!(matches!(read_audit_info(dir.path()), Err(StoreError::Json { .. })));
+}
+
+#[test]
+fn numbers_in_a_mark_do_not_creep() {
+    let dir = tempfile::tempdir().unwrap();
+    let out = dir.path();
+    let mut stream = tailchase::base::Stream::new(1, "marks");
+    for _ in 0..200 {
+        let value = stream.between(-8.0, 8.0).exp();
+        let noise = Some(NoiseEntry { jerk_density_yd2ps5: value, sigma_yd: 1.0 / value });
+        write_game(out, &GameMark { noise, ..mark("a") }, &GameTables::default()).unwrap();
+        let (first, text) = (read_marks(out).unwrap().remove("a").unwrap(), fs::read(mark_path(out, "a")).unwrap());
+        write_mark(out, &first).unwrap();
+        assert_eq!(fs::read(mark_path(out, "a")).unwrap(), text);
+        assert!((first.noise.unwrap().jerk_density_yd2ps5 / value - 1.0).abs() < 1e-11);
+    }
 }
 
 #[test]
