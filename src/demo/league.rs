@@ -45,7 +45,7 @@ pub struct Athlete {
     /// A number written as text.
     pub id: Arc<str>,
     pub name: Arc<str>,
-    /// Index into [`CLUBS`].
+    /// Index into the league's clubs.
     pub club: usize,
     /// Short label of his club.
     pub side: Arc<str>,

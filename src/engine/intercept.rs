@@ -192,11 +192,8 @@ impl SidelineCourse {
             let back_yd = piece.from_yd - piece.way * (piece.starts_s * self.speed_yps);
             let meeting = triangle(defender_yd, speed_yps, back_yd, piece.way * self.speed_yps).ok()?;
             let along_yd = (meeting.t_s - piece.starts_s) * self.speed_yps;
-            (-1e-9..=piece.length_yd).contains(&along_yd).then(|| CourseMeeting {
-                t_s: meeting.t_s,
-                spot_yd: meeting.spot_yd,
-                margin_s: 0.0,
-            })
+            let met = CourseMeeting { t_s: meeting.t_s, spot_yd: meeting.spot_yd, margin_s: 0.0 };
+            (-1e-9..=piece.length_yd).contains(&along_yd).then_some(met)
         })
     }
 

@@ -44,6 +44,21 @@ impl Grid {
     }
 }
 
+impl Grid {
+    /// As [`Grid::coast_drive_s`], to a share of the way from point `before` to the next.
+    #[inline]
+    fn coast_drive_between_s(&self, from: usize, before: usize, share: f64) -> (f64, f64) {
+        let step_s = share * (self.t_s[before + 1] - self.t_s[before]);
+        let dt_s = self.t_s[before] - self.t_s[from] + step_s;
+        let coast_s = if self.direct {
+            self.drag.coast_s(dt_s)
+        } else {
+            (1.0 - self.decay[before] * self.inverse[from] * self.drag.decay(step_s)) / self.drag.alpha_per_s
+        };
+        (coast_s, dt_s - coast_s)
+    }
+}
+
 /// A path over a grid: spots in yards, turned so that the carrier attacks +x. It ends where the slices end.
 #[derive(Clone, Copy)]
 pub struct Path<'a> {
@@ -75,8 +90,10 @@ pub struct Expected {
 
 /// The optimist's and the pessimist's top speed lie this many sigmas out; beyond is a chance of 1e-9.
 const BAND_SIGMAS: f64 = 6.0;
-/// A piece of path is halved while the needed speed falls by more than this many sigmas in it, to this depth.
+/// A piece of path is halved while the needed speed falls by more than this many sigmas in it, counted in the bulk of the
+/// distribution only, to this depth.
 const PIECE_SIGMAS: f64 = 0.75;
+const BULK_SIGMAS: f64 = 3.0;
 const PIECE_DEPTH: u32 = 6;
 
 impl Path<'_> {
@@ -168,17 +185,15 @@ impl Path<'_> {
 
     /// The meeting in the piece that ends at point `at`, which is reached while the one before is not.
     fn meeting_before(&self, now: usize, who: State, top_yps: f64, at: usize) -> Meeting {
-        let drag = self.grid.drag;
+        let reach_yd = self.grid.drag.reach_yd;
         let (t0_s, t1_s) = (self.grid.t_s[at - 1] - self.grid.t_s[now], self.grid.t_s[at] - self.grid.t_s[now]);
-        let span_s = t1_s - t0_s;
         let short_yd = |share: f64| {
-            let t_s = t0_s + share * span_s;
-            let coast_s = drag.coast_s(t_s);
+            let (coast_s, drive_s) = self.grid.coast_drive_between_s(now, at - 1, share);
             let aim_yd = self.spot_between(at - 1, share) - (who.pos_yd + who.vel_yps * coast_s);
-            (aim_yd.norm() - drag.reach_yd - top_yps * (t_s - coast_s), aim_yd)
+            (aim_yd.norm() - reach_yd - top_yps * drive_s, aim_yd)
         };
         let share = first_zero(|s| short_yd(s).0);
-        Meeting { t_s: t0_s + share * span_s, spot_yd: self.spot_between(at - 1, share), aim_yd: short_yd(share).1 }
+        Meeting { t_s: t0_s + share * (t1_s - t0_s), spot_yd: self.spot_between(at - 1, share), aim_yd: short_yd(share).1 }
     }
 
     /// The meeting to run for: the earliest one, or, when there is none, the point that asks for the least speed.
@@ -213,7 +228,7 @@ impl Path<'_> {
         if top.sigma_yps <= 0.0 {
             return Expected { x_yd: self.meeting_before(now, who, top.yps, first_hit).spot_yd.x, chance: 1.0, first_hit };
         }
-        let mut mass = Mass { top, least_yps: f64::INFINITY, met_x_yd: 0.0, chance: 0.0 };
+        let mut mass = Mass { top, least_yps: f64::INFINITY, least_cdf: 1.0, least_pdf: 0.0, met_x_yd: 0.0, chance: 0.0 };
         let mut before_yps = if first_hit == now + 1 { f64::INFINITY } else { self.needed_at(now, first_hit - 1, who) };
         for at in first_hit..=last {
             let after_yps = self.needed_at(now, at, who);
@@ -241,11 +256,14 @@ impl Path<'_> {
         if n1_yps >= mass.least_yps || n1_yps >= mass.top.yps + BAND_SIGMAS * mass.top.sigma_yps {
             return;
         }
-        let steep = n0_yps.min(mass.least_yps) - n1_yps.max(0.0) > PIECE_SIGMAS * mass.top.sigma_yps;
+        let z = |n_yps: f64| ((n_yps - mass.top.yps) / mass.top.sigma_yps).clamp(-BULK_SIGMAS, BULK_SIGMAS);
+        let steep = z(n0_yps.min(mass.least_yps)) - z(n1_yps) > PIECE_SIGMAS;
         if steep && depth < PIECE_DEPTH {
             let share = 0.5 * (share0 + share1);
-            let t_s = self.grid.t_s[at - 1] - self.grid.t_s[now] + share * (self.grid.t_s[at] - self.grid.t_s[at - 1]);
-            let middle_yps = self.grid.drag.needed_yps(who, self.spot_between(at - 1, share), t_s);
+            let (coast_s, drive_s) = self.grid.coast_drive_between_s(now, at - 1, share);
+            let centre_yd = who.pos_yd + who.vel_yps * coast_s;
+            let short_yd = (self.spot_between(at - 1, share) - centre_yd).norm() - self.grid.drag.reach_yd;
+            let middle_yps = short_yd.max(0.0) / drive_s;
             self.add_piece(now, at, who, mass, Piece { share1: share, n1_yps: middle_yps, ..piece }, depth + 1);
             self.add_piece(now, at, who, mass, Piece { share0: share, n0_yps: middle_yps, ..piece }, depth + 1);
             return;
@@ -269,6 +287,9 @@ struct Piece {
 struct Mass {
     top: TopSpeed,
     least_yps: f64,
+    /// Φ and φ at the least speed so far.
+    least_cdf: f64,
+    least_pdf: f64,
     met_x_yd: f64,
     chance: f64,
 }
@@ -278,18 +299,21 @@ impl Mass {
     /// least so far. With V ~ N(V̂, σ²): E[V; n₁<V<n₀] = V̂ (Φ₀ − Φ₁) − σ (φ₀ − φ₁).
     fn add(&mut self, n0_yps: f64, n1_yps: f64, x0_yd: f64, x1_yd: f64) {
         let TopSpeed { yps, sigma_yps } = self.top;
-        let upper_yps = n0_yps.min(self.least_yps);
-        let (z0, z1) = ((upper_yps - yps) / sigma_yps, (n1_yps - yps) / sigma_yps);
-        let cdf0 = if z0.is_infinite() { 1.0 } else { normal::cdf(z0) };
-        let part = cdf0 - normal::cdf(z1);
+        let density = |n_yps: f64| {
+            let z = (n_yps - yps) / sigma_yps;
+            (normal::cdf(z), normal::pdf(z))
+        };
+        let (cdf0, pdf0) = if n0_yps < self.least_yps { density(n0_yps) } else { (self.least_cdf, self.least_pdf) };
+        let (cdf1, pdf1) = density(n1_yps);
+        let part = cdf0 - cdf1;
+        (self.least_cdf, self.least_pdf) = (cdf1, pdf1);
         self.least_yps = n1_yps;
         self.chance += part;
         if n0_yps.is_infinite() || n0_yps - n1_yps < 1e-12 {
             self.met_x_yd += x1_yd * part;
             return;
         }
-        let pdf0 = if z0.is_infinite() { 0.0 } else { normal::pdf(z0) };
-        let moment_yps = yps * part - sigma_yps * (pdf0 - normal::pdf(z1));
+        let moment_yps = yps * part - sigma_yps * (pdf0 - pdf1);
         // x as a function of the speed needed, linear in the piece.
         let slope = (x1_yd - x0_yd) / (n0_yps - n1_yps);
         self.met_x_yd += x1_yd * part - slope * (moment_yps - n1_yps * part);

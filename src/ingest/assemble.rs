@@ -63,6 +63,9 @@ impl RawGame {
     /// Seconds of each play's frames.
     fn clocks(&self, drafts: &[Draft]) -> Result<Vec<Vec<f64>>, IngestError> {
         let stamped: Vec<Option<Vec<f64>>> = drafts.iter().map(|d| by_stamps(&d.frames, &d.stamps)).collect();
+        if let Some(step_s) = median_step_s(&stamped).filter(|s| !USUAL_STEPS_S.contains(s)) {
+            return Err(IngestError::BadClock { game: self.id.to_string(), step_s });
+        }
         if stamped.iter().all(Option::is_some) {
             return Ok(stamped.into_iter().flatten().collect());
         }
@@ -104,6 +107,17 @@ impl RawGame {
             ball: draft.ball,
         }
     }
+}
+
+/// Steps beyond these are no tracking data: the time column is in another unit, or is no time.
+const USUAL_STEPS_S: std::ops::RangeInclusive<f64> = 0.002..=5.0;
+
+/// Median over the plays of their mean step.
+fn median_step_s(clocks: &[Option<Vec<f64>>]) -> Option<f64> {
+    let span = |t: &Vec<f64>| (t.len() > 1).then(|| (t[t.len() - 1] - t[0]) / (t.len() - 1) as f64);
+    let mut steps: Vec<f64> = clocks.iter().flatten().filter_map(span).collect();
+    steps.sort_by(f64::total_cmp);
+    steps.get(steps.len() / 2).copied()
 }
 
 fn first_stamp(draft: &Draft) -> Option<i64> {

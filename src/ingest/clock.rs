@@ -6,8 +6,8 @@ use super::number::{Read, number};
 /// Stands for "no time" in a row.
 pub(crate) const NO_TIME: i64 = i64::MIN;
 
-/// Times beyond some thirty thousand years are no times; differences of two that are not stay whole numbers.
-pub(crate) const FURTHEST_US: i64 = 1_000_000_000_000_000_000;
+/// Times beyond some sixty thousand years are no times; differences of two that are not stay whole numbers.
+pub(crate) const FURTHEST_US: i64 = 2_000_000_000_000_000_000;
 
 /// Microseconds of a time field: `Ok(NO_TIME)` where it is missing, `Err` where it is no time.
 /// A number is seconds unless the form says milliseconds; a text with a colon is a clock, with or without a date.

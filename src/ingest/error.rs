@@ -57,6 +57,10 @@ pub enum IngestError {
         "game {game}: expected times or speeds that tell the frame rate, found none that do (add `frame_rate_hz = 10`, or the rate that it is, to a mapping file)"
     )]
     UnknownRate { game: String },
+    #[error(
+        "game {game}: expected frames 0.002 to 5 s apart, found them {step_s} s apart (check the time column; `time = \"milliseconds\"` or another column in a mapping file)"
+    )]
+    BadClock { game: String, step_s: f64 },
     #[error("{}: expected a mapping, found: {found} (`inspect` prints one ready to edit)", path.display())]
     BadMapping { path: PathBuf, found: String },
     #[error("mapping, {key}: expected {expected}, found {found:?} (correct the mapping file)")]

@@ -11,14 +11,30 @@ pub fn telling_yd(row: &PursuitRow) -> Option<f64> {
 
 /// For each defender the index of his most telling row; of two alike the first in order of (game, play, pursuit).
 pub fn most_telling<'a>(rows: impl Iterator<Item = (usize, &'a PursuitRow)>) -> BTreeMap<&'a str, usize> {
-    let mut best: BTreeMap<&str, (f64, (&str, &str, i64), usize)> = BTreeMap::new();
+    let mut best: BTreeMap<&str, Told> = BTreeMap::new();
     for (index, row) in rows {
         let Some(yards) = telling_yd(row) else { continue };
-        let key = (&*row.game, &*row.play, row.pursuit);
-        let better = best.get(&*row.defender).is_none_or(|(y, k, _)| yards > *y || (yards == *y && key < *k));
-        if better {
-            best.insert(&row.defender, (yards, key, index));
-        }
+        let told = Told { yards, key: (&row.game, &row.play, row.pursuit), index };
+        best.entry(&row.defender)
+            .and_modify(|old| {
+                if told.tells_more_than(old) {
+                    *old = told
+                }
+            })
+            .or_insert(told);
     }
-    best.into_iter().map(|(defender, (_, _, index))| (defender, index)).collect()
+    best.into_iter().map(|(defender, told)| (defender, told.index)).collect()
+}
+
+#[derive(Clone, Copy)]
+struct Told<'a> {
+    yards: f64,
+    key: (&'a str, &'a str, i64),
+    index: usize,
+}
+
+impl Told<'_> {
+    fn tells_more_than(&self, other: &Told) -> bool {
+        self.yards > other.yards || (self.yards == other.yards && self.key < other.key)
+    }
 }

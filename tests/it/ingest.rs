@@ -549,8 +549,11 @@ fn packed_files_cut_short_and_files_that_are_no_text_are_errors() {
     let noise = [b"play,frame,time,player,x,y\n".to_vec(), vec![b'x'; 140 << 20]].concat();
     insta::assert_snapshot!(error("game.csv", noise, &none), @"game.csv, row 1: expected a line end within 64 MiB, found none (check that this is a text file)");
     // Numbers at the end of what they can hold lose no row and stop nothing.
-    let wild = "play,frame,time,player,x,y\n1,9000000000000000,1e11,7,1e300,-1e300\n1,-9000000000000000,-1e11,7,3,4\n";
+    let wild = "play,frame,time,player,x,y\n1,9000000000000000,0.2,7,1e300,-1e300\n1,-9000000000000000,0.1,7,3,4\n";
     assert_eq!(read_text(wild, &none)[0].account.in_plays, 2);
+    let in_ms = small("time", |_, f| (1_789_326_185_100 + 100 * f).to_string());
+    insta::assert_snapshot!(error("game.csv", &in_ms, &none), @r#"game game: expected frames 0.002 to 5 s apart, found them 100 s apart (check the time column; `time = "milliseconds"` or another column in a mapping file)"#);
+    assert_eq!(read_text(&in_ms, &mapping("time = \"milliseconds\""))[0].plays[0].time_s[1], 0.1);
     assert!(read_with(&[Folder::new().path().join("*.csv")], &none).is_err());
 }
 

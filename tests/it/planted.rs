@@ -55,7 +55,6 @@ fn families(seeds: u64, rate_hz: f64, noise_yd: f64, settings: &Settings) -> BTr
     out
 }
 
-
 /// Share of a family's own yards that stands under a heading.
 fn share(families: &BTreeMap<(Fault, PathKind), Family>, fault: Fault, heading: fn(&Family) -> f64) -> f64 {
     let of = |g: fn(&Family) -> f64| families.iter().filter(|((f, _), _)| *f == fault).map(|(_, f)| g(f)).sum::<f64>();
@@ -122,7 +121,12 @@ fn accounts(rate_hz: f64, settings: &Settings) -> Vec<(String, f64)> {
                 let prepared = prepare(&play, settings);
                 let noise = noise_of(&[(&play, &prepared)], settings);
                 let smoothed = smooth_play(&play, &prepared, noise, settings);
-                let tops = play.movers.iter().zip(truth.top_speeds_yps).map(|(m, yps)| (m.id.clone(), TopSpeed { yps, sigma_yps: 0.03 * yps })).collect();
+                let tops = play
+                    .movers
+                    .iter()
+                    .zip(truth.top_speeds_yps)
+                    .map(|(m, yps)| (m.id.clone(), TopSpeed { yps, sigma_yps: 0.03 * yps }))
+                    .collect();
                 let audit = judge(&play, &prepared, &smoothed, &tops, settings);
                 let row = &audit.carries[0].pursuits[0].row;
                 out.push((format!("{fault:?} {path:?} {seed}"), row.conceded_yd.unwrap_or(f64::NAN)));

@@ -177,7 +177,13 @@ fn parallel_navigation_captures_inside_the_first_circle() {
     for run in &data.run {
         let heading = |t: f64| match run.heading.as_str() {
             "pi/2 + 0.8 sin 2t" => std::f64::consts::FRAC_PI_2 + 0.8 * (2.0 * t).sin(),
-            "pi/2, after 1 s -pi/3" => if t < 1.0 { std::f64::consts::FRAC_PI_2 } else { -std::f64::consts::FRAC_PI_3 },
+            "pi/2, after 1 s -pi/3" => {
+                if t < 1.0 {
+                    std::f64::consts::FRAC_PI_2
+                } else {
+                    -std::f64::consts::FRAC_PI_3
+                }
+            }
             "pi/2 - 0.5 t" => std::f64::consts::FRAC_PI_2 - 0.5 * t,
             other => panic!("unknown heading {other}"),
         };

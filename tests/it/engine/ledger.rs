@@ -214,7 +214,11 @@ fn random_account(seed: u64, settings: &Settings) -> (Chase, Ledger) {
         blocked.push(draws.chance(0.2));
     }
     let chase = Chase::new(&t_s, carrier, 9.0, settings);
-    let ledger = keep(&chase, &Chaser { first: 0, states: &states, blocked: &blocked, top: TopSpeed { yps: 8.7, sigma_yps: 0.26 }, ends_in_contact: false }, &settings.clock);
+    let ledger = keep(
+        &chase,
+        &Chaser { first: 0, states: &states, blocked: &blocked, top: TopSpeed { yps: 8.7, sigma_yps: 0.26 }, ends_in_contact: false },
+        &settings.clock,
+    );
     (chase, ledger)
 }
 
@@ -257,8 +261,7 @@ fn shift_and_mirror_leave_the_account() {
         let plain = entries(&|s| s);
         let shifted = entries(&|s| State { pos_yd: s.pos_yd + V2::new(50.0, 0.0), ..s });
         let width = wide.field.width_yd;
-        let mirrored =
-            entries(&|s| State { pos_yd: V2::new(s.pos_yd.x, width - s.pos_yd.y), vel_yps: V2::new(s.vel_yps.x, -s.vel_yps.y) });
+        let mirrored = entries(&|s| State { pos_yd: V2::new(s.pos_yd.x, width - s.pos_yd.y), vel_yps: V2::new(s.vel_yps.x, -s.vel_yps.y) });
         for i in 0..6 {
             near("shifted", shifted[i], plain[i], 1e-9);
             near("mirrored", mirrored[i], plain[i], 1e-9);

@@ -80,7 +80,9 @@ fn handbook_radar_plot() {
     let seen = sight(first, w);
     let spot = first + w * seen.cpa_s;
     // Graphical work: the handbook's own digits, ±1°, ±0.1 kn, ±1 %, ±1 min.
-    for (expected, tolerances) in [(&plot.printed, [0.01 * 4035.0, 1.0, 0.1, 1.0, 69.0, 1.0]), (&plot.computed, [1e-3, 1e-6, 1e-6, 1e-6, 1e-4, 1e-6])] {
+    for (expected, tolerances) in
+        [(&plot.printed, [0.01 * 4035.0, 1.0, 0.1, 1.0, 69.0, 1.0]), (&plot.computed, [1e-3, 1e-6, 1e-6, 1e-6, 1e-4, 1e-6])]
+    {
         near("moved", moved.norm(), expected.moved_yd, tolerances[0]);
         near("direction", nautical_deg(moved.angle_rad()), expected.direction_deg, tolerances[1]);
         near("speed", w.norm() / units::YPS_PER_KN, expected.speed_kn, tolerances[2]);
