@@ -1,6 +1,7 @@
 //! The standard normal distribution.
 
 use std::f64::consts::{FRAC_1_SQRT_2, PI};
+use std::sync::LazyLock;
 
 /// Φ(z), through the complementary error function of the C library (relative error near 1e-16).
 ///
@@ -45,4 +46,59 @@ pub fn quantile(p: f64) -> f64 {
         }
     }
     z
+}
+
+/// Φ and φ from a table, for inner loops: cubic Hermite interpolation between exact values 1/64 apart, absolute error
+/// below 1e-9. Outside ±8 the distribution is taken as ended.
+#[derive(Debug)]
+pub struct Table {
+    /// (Φ, φ) at −8, −8 + 1/64, …, 8.
+    nodes: Vec<(f64, f64)>,
+}
+
+const END: f64 = 8.0;
+const PER_UNIT: f64 = 64.0;
+
+static TABLE: LazyLock<Table> = LazyLock::new(|| {
+    let nodes = (0..=(2.0 * END * PER_UNIT) as usize).map(|i| i as f64 / PER_UNIT - END).map(|z| (cdf(z), pdf(z))).collect();
+    Table { nodes }
+});
+
+impl Table {
+    /// The one table.
+    pub fn get() -> &'static Table {
+        &TABLE
+    }
+
+    /// (Φ(z), φ(z)).
+    ///
+    /// ```
+    /// use tailchase::base::normal::{Table, cdf, pdf};
+    /// let (c, p) = Table::get().at(1.234);
+    /// assert!((c - cdf(1.234)).abs() < 1e-9 && (p - pdf(1.234)).abs() < 1e-9);
+    /// assert_eq!(Table::get().at(f64::INFINITY), (1.0, 0.0));
+    /// ```
+    #[inline]
+    pub fn at(&self, z: f64) -> (f64, f64) {
+        if z >= END {
+            return (1.0, 0.0);
+        }
+        if z <= -END {
+            return (0.0, 0.0);
+        }
+        let place = (z + END) * PER_UNIT;
+        let i = place as usize;
+        let t = place - i as f64;
+        let (Some((c0, p0)), Some((c1, p1))) = (self.nodes.get(i), self.nodes.get(i + 1)) else {
+            return (cdf(z), pdf(z)); // not a number
+        };
+        let h = 1.0 / PER_UNIT;
+        let z0 = i as f64 * h - END;
+        let hermite = |a: f64, slope_a: f64, b: f64, slope_b: f64| {
+            let (u, v) = (t * t, t * t * t);
+            a * (2.0 * v - 3.0 * u + 1.0) + h * slope_a * (v - 2.0 * u + t) + b * (3.0 * u - 2.0 * v) + h * slope_b * (v - u)
+        };
+        // Φ' = φ, φ' = −z φ.
+        (hermite(*c0, *p0, *c1, *p1), hermite(*p0, -z0 * p0, *p1, -(z0 + h) * p1))
+    }
 }

@@ -140,7 +140,7 @@ pub fn keep(chase: &Chase, chaser: &Chaser, clock: &ClockSettings) -> Ledger {
         values.push(FrameValue {
             expected_x_yd: expected.x_yd,
             chance: expected.chance,
-            need_yps: path.need(now, *state).map(|(need_yps, _)| need_yps),
+            need_yps: path.need_yps(now, *state),
             t_star_s: meeting.map(|m| m.t_s),
             push,
         });

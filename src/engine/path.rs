@@ -2,7 +2,8 @@
 //! every point, the earliest meeting, the chance, the expected meeting spot.
 
 use super::reach::{Drag, State};
-use crate::base::{V2, normal};
+use crate::base::V2;
+use crate::base::normal::Table;
 
 /// A defender's capability: top speed and its standard error, yd/s.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -88,6 +89,8 @@ pub struct Expected {
     pub first_hit: usize,
 }
 
+/// Points looked at together, without a branch between them.
+const LANES: usize = 4;
 /// The optimist's and the pessimist's top speed lie this many sigmas out; beyond is a chance of 1e-9.
 const BAND_SIGMAS: f64 = 6.0;
 /// A piece of path is halved while the needed speed falls by more than this many sigmas in it, counted in the bulk of the
@@ -128,45 +131,93 @@ impl Path<'_> {
         (self.spot(now) - who.pos_yd).norm() <= self.grid.drag.reach_yd
     }
 
-    /// Least speed with which the rest of the path can be met, and the point that asks for it. Yd/s.
+    /// Least speed with which the rest of the path can be met, yd/s.
     /// No result when `now` is the path's last point and he is not in contact.
-    pub fn need(&self, now: usize, who: State) -> Option<(f64, usize)> {
+    pub fn need_yps(&self, now: usize, who: State) -> Option<f64> {
         if self.in_contact(now, who) {
-            return Some((0.0, now));
+            return Some(0.0);
         }
-        let mut best: Option<(f64, usize)> = None;
-        for at in now + 1..self.len() {
-            let (short_yd, drive_s) = self.short_drive(now, at, who);
-            let needed_yps = short_yd.max(0.0) / drive_s;
-            if best.is_none_or(|(b, _)| needed_yps < b) {
-                best = Some((needed_yps, at));
+        let mut best = [f64::INFINITY; LANES];
+        let mut at = now + 1;
+        while at + LANES <= self.len() {
+            let (short_yd, drive_s) = self.short_drive_lanes(now, at, who);
+            for lane in 0..LANES {
+                let needed_yps = short_yd[lane] / drive_s[lane];
+                best[lane] = if needed_yps < best[lane] { needed_yps } else { best[lane] };
             }
+            at += LANES;
         }
-        best
+        let rest = (at..self.len()).map(|at| self.needed_at(now, at, who));
+        let least = rest.chain(best).fold(f64::INFINITY, f64::min);
+        (now + 1 < self.len()).then_some(least.max(0.0))
+    }
+
+    /// The point that asks for the least speed. No result when `now` is the last point.
+    fn easiest(&self, now: usize, who: State) -> Option<usize> {
+        (now + 1..self.len()).min_by(|a, b| self.needed_at(now, *a, who).total_cmp(&self.needed_at(now, *b, who)))
     }
 
     /// First point at or after `from_point` that `top_yps` reaches; the length when none is.
     #[inline]
     fn first_reached(&self, now: usize, who: State, top_yps: f64, from_point: usize) -> usize {
-        let reach_yd = self.grid.drag.reach_yd;
         let hit = |at: usize| {
-            let (coast_s, drive_s) = self.grid.coast_drive_s(now, at);
-            let gap = self.spot(at) - (who.pos_yd + who.vel_yps * coast_s);
-            let radius_yd = reach_yd + top_yps * drive_s;
-            gap.norm2() <= radius_yd * radius_yd
+            let (short_yd, drive_s) = self.short_drive(now, at, who);
+            short_yd <= top_yps * drive_s
         };
         let mut at = from_point;
-        while at + 4 <= self.len() {
-            // Four at a time without a branch between them.
-            if hit(at) | hit(at + 1) | hit(at + 2) | hit(at + 3) {
+        while at + LANES <= self.len() {
+            let (gap2_yd, drive_s) = self.gap2_drive_lanes(now, at, who);
+            let mut any = false;
+            for lane in 0..LANES {
+                let radius_yd = self.grid.drag.reach_yd + top_yps * drive_s[lane];
+                any |= gap2_yd[lane] <= radius_yd * radius_yd;
+            }
+            if any {
                 break;
             }
-            at += 4;
+            at += LANES;
         }
         while at < self.len() && !hit(at) {
             at += 1;
         }
         at
+    }
+
+    /// Squared gap to the coasting centre and seconds of driving, for a few neighbouring points at once.
+    #[inline(always)]
+    fn gap2_drive_lanes(&self, now: usize, at: usize, who: State) -> ([f64; LANES], [f64; LANES]) {
+        let mut gap2_yd = [0.0; LANES];
+        let mut drive_s = [0.0; LANES];
+        let alpha = self.grid.drag.alpha_per_s;
+        let (t_now_s, x, y) = (self.grid.t_s[now], &self.x_yd[at..at + LANES], &self.y_yd[at..at + LANES]);
+        let t_s = &self.grid.t_s[at..at + LANES];
+        let mut coast_s = [0.0; LANES];
+        if self.grid.direct {
+            for lane in 0..LANES {
+                coast_s[lane] = self.grid.drag.coast_s(t_s[lane] - t_now_s);
+            }
+        } else {
+            let (decay, inverse) = (&self.grid.decay[at..at + LANES], self.grid.inverse[now]);
+            for lane in 0..LANES {
+                coast_s[lane] = (1.0 - decay[lane] * inverse) / alpha;
+            }
+        }
+        for lane in 0..LANES {
+            let gx = x[lane] - (who.pos_yd.x + who.vel_yps.x * coast_s[lane]);
+            let gy = y[lane] - (who.pos_yd.y + who.vel_yps.y * coast_s[lane]);
+            gap2_yd[lane] = gx * gx + gy * gy;
+            drive_s[lane] = t_s[lane] - t_now_s - coast_s[lane];
+        }
+        (gap2_yd, drive_s)
+    }
+
+    #[inline(always)]
+    fn short_drive_lanes(&self, now: usize, at: usize, who: State) -> ([f64; LANES], [f64; LANES]) {
+        let (mut gap_yd, drive_s) = self.gap2_drive_lanes(now, at, who);
+        for gap in &mut gap_yd {
+            *gap = gap.sqrt() - self.grid.drag.reach_yd;
+        }
+        (gap_yd, drive_s)
     }
 
     /// Earliest meeting at `top_yps`, sub-frame precise. No result when the path ends first.
@@ -206,7 +257,7 @@ impl Path<'_> {
         if let Some(meeting) = self.earliest_from(now, who, top_yps, from_point) {
             return Some(meeting);
         }
-        let (_, at) = self.need(now, who)?;
+        let at = self.easiest(now, who)?;
         let (coast_s, _) = self.grid.coast_drive_s(now, at);
         let spot_yd = self.spot(at);
         Some(Meeting { t_s: self.grid.t_s[at] - self.grid.t_s[now], spot_yd, aim_yd: spot_yd - (who.pos_yd + who.vel_yps * coast_s) })
@@ -228,7 +279,8 @@ impl Path<'_> {
         if top.sigma_yps <= 0.0 {
             return Expected { x_yd: self.meeting_before(now, who, top.yps, first_hit).spot_yd.x, chance: 1.0, first_hit };
         }
-        let mut mass = Mass { top, least_yps: f64::INFINITY, least_cdf: 1.0, least_pdf: 0.0, met_x_yd: 0.0, chance: 0.0 };
+        let mut mass =
+            Mass { top, table: Table::get(), least_yps: f64::INFINITY, least_cdf: 1.0, least_pdf: 0.0, met_x_yd: 0.0, chance: 0.0 };
         let mut before_yps = if first_hit == now + 1 { f64::INFINITY } else { self.needed_at(now, first_hit - 1, who) };
         for at in first_hit..=last {
             let after_yps = self.needed_at(now, at, who);
@@ -286,6 +338,7 @@ struct Piece {
 /// The chance met so far and its first moment in x.
 struct Mass {
     top: TopSpeed,
+    table: &'static Table,
     least_yps: f64,
     /// Φ and φ at the least speed so far.
     least_cdf: f64,
@@ -299,10 +352,7 @@ impl Mass {
     /// least so far. With V ~ N(V̂, σ²): E[V; n₁<V<n₀] = V̂ (Φ₀ − Φ₁) − σ (φ₀ − φ₁).
     fn add(&mut self, n0_yps: f64, n1_yps: f64, x0_yd: f64, x1_yd: f64) {
         let TopSpeed { yps, sigma_yps } = self.top;
-        let density = |n_yps: f64| {
-            let z = (n_yps - yps) / sigma_yps;
-            (normal::cdf(z), normal::pdf(z))
-        };
+        let density = |n_yps: f64| self.table.at((n_yps - yps) / sigma_yps);
         let (cdf0, pdf0) = if n0_yps < self.least_yps { density(n0_yps) } else { (self.least_cdf, self.least_pdf) };
         let (cdf1, pdf1) = density(n1_yps);
         let part = cdf0 - cdf1;
@@ -335,7 +385,7 @@ fn first_zero(f: impl Fn(f64) -> f64) -> f64 {
             break;
         }
         let f_middle = f(middle);
-        if f_middle.abs() < 1e-13 {
+        if f_middle.abs() < 1e-11 {
             return middle;
         }
         if f_middle > 0.0 {
