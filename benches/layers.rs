@@ -15,6 +15,7 @@ use tailchase::engine::ledger::{Chaser, keep};
 use tailchase::engine::path::TopSpeed;
 use tailchase::engine::reach::{Drag, State};
 use tailchase::ingest::{IngestOptions, open};
+use tailchase::kinematics::SmoothWork;
 use tailchase::model::{Noise, Play, Settings};
 use tailchase::pipeline::{FramesMode, audit_game};
 use tailchase::rating::rank_players;
@@ -88,7 +89,8 @@ fn d_noise(bencher: Bencher) {
 }
 
 fn smoothed(prepared: &[Prepared], noise: Noise) -> Vec<Smoothed> {
-    PLAYS.iter().zip(prepared).map(|(play, p)| smooth_play(play, p, noise, &Settings::default())).collect()
+    let mut work = SmoothWork::default();
+    PLAYS.iter().zip(prepared).map(|(play, p)| smooth_play(play, p, noise, &Settings::default(), &mut work)).collect()
 }
 
 #[divan::bench]

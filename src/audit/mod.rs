@@ -23,6 +23,7 @@ pub use judge::{CarryAudit, PlayAudit, PursuitAudit, judge};
 pub use prepare::{Prepared, noise_of, prepare};
 pub use smoothing::{Smoothed, smooth_play};
 
+use crate::kinematics::SmoothWork;
 use crate::model::{Play, Settings};
 
 /// Audits one play by itself: noise and top speeds are read off this play alone.
@@ -31,7 +32,7 @@ use crate::model::{Play, Settings};
 pub fn audit_play(play: &Play, settings: &Settings) -> PlayAudit {
     let prepared = prepare(play, settings);
     let noise = noise_of(std::slice::from_ref(&(play, &prepared)), settings);
-    let smoothed = smooth_play(play, &prepared, noise, settings);
+    let smoothed = smooth_play(play, &prepared, noise, settings, &mut SmoothWork::default());
     let tops = smoothed.speeds.top_speeds(&settings.motion);
     judge(play, &prepared, &smoothed, &tops, settings)
 }

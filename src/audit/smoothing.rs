@@ -21,11 +21,12 @@ const PAD_S: f64 = 1.0;
 
 /// Smooths every mover over the frames around the carries. Where a defender meets the carrier the jerk density rises,
 /// for both, so that the blow is not smeared backwards.
-pub fn smooth_play(play: &Play, prepared: &Prepared, noise: Noise, settings: &Settings) -> Smoothed {
+///
+/// `work`: buffers that may be handed from play to play; what they hold never changes a result.
+pub fn smooth_play(play: &Play, prepared: &Prepared, noise: Noise, settings: &Settings, work: &mut SmoothWork) -> Smoothed {
     let windows = windows(play, prepared);
-    let mut work = SmoothWork::default();
     let mut tracks: Vec<MoverTrack> =
-        (0..play.movers.len()).map(|mover| smooth_mover(play, prepared, mover, &windows, noise, &[], &mut work)).collect();
+        (0..play.movers.len()).map(|mover| smooth_mover(play, prepared, mover, &windows, noise, &[], work)).collect();
 
     // Who met whom, as far as the plain tracks tell.
     let mut blows: Vec<Vec<usize>> = vec![Vec::new(); play.movers.len()];
@@ -41,7 +42,7 @@ pub fn smooth_play(play: &Play, prepared: &Prepared, noise: Noise, settings: &Se
         frames.sort_unstable();
         frames.dedup();
         let boosts: Vec<Boost> = frames.iter().map(|f| Boost { frame: *f, factor: settings.smoothing.contact_boost }).collect();
-        tracks[mover] = smooth_mover(play, prepared, mover, &windows, noise, &boosts, &mut work);
+        tracks[mover] = smooth_mover(play, prepared, mover, &windows, noise, &boosts, work);
     }
 
     let mut speeds = SpeedBook::default();

@@ -4,7 +4,7 @@ use super::request::FramesMode;
 use super::told::most_telling;
 use crate::audit::{PlayAudit, Prepared, Smoothed, frame_rows, judge, noise_of, prepare, smooth_play};
 use crate::engine::capability::SpeedBook;
-use crate::kinematics::OwnCheck;
+use crate::kinematics::{OwnCheck, SmoothWork};
 use crate::model::{Findings, Noise, Play, SetAside, Settings, SourceRow};
 use crate::store::{CarryRow, FrameRow, PursuitRow};
 use rayon::prelude::*;
@@ -35,7 +35,10 @@ pub fn audit_game(plays: &[Play], settings: &Settings, mode: FramesMode) -> Audi
     let noise = noise_of(&pairs, settings);
     out.noise = Some(noise);
 
-    let mut smoothed: Vec<Smoothed> = pairs.par_iter().map(|(play, prepared)| smooth_play(play, prepared, noise, settings)).collect();
+    let mut smoothed: Vec<Smoothed> = pairs
+        .par_iter()
+        .map_init(SmoothWork::default, |work, (play, prepared)| smooth_play(play, prepared, noise, settings, work))
+        .collect();
     let (mut speeds, mut own) = (SpeedBook::default(), OwnCheck::default());
     for one in &mut smoothed {
         speeds.merge(std::mem::take(&mut one.speeds));

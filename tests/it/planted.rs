@@ -5,6 +5,7 @@ use tailchase::audit::{judge, noise_of, prepare, smooth_play};
 use tailchase::demo::planted::{Fault, PathKind, planted_play};
 use tailchase::engine::capability::SpeedBook;
 use tailchase::engine::path::TopSpeed;
+use tailchase::kinematics::SmoothWork;
 use tailchase::model::{Play, Settings};
 
 /// Yards by the defender's own headings, and how many accounts.
@@ -30,7 +31,8 @@ fn families(seeds: u64, rate_hz: f64, noise_yd: f64, settings: &Settings) -> BTr
     let prepared: Vec<_> = plays.iter().map(|(_, play)| prepare(play, settings)).collect();
     let pairs: Vec<_> = plays.iter().map(|(_, play)| play).zip(&prepared).collect();
     let noise = noise_of(&pairs, settings);
-    let mut smoothed: Vec<_> = pairs.iter().map(|(play, prepared)| smooth_play(play, prepared, noise, settings)).collect();
+    let mut smoothed: Vec<_> =
+        pairs.iter().map(|(play, prepared)| smooth_play(play, prepared, noise, settings, &mut SmoothWork::default())).collect();
     let mut speeds = SpeedBook::default();
     for one in &mut smoothed {
         speeds.merge(std::mem::take(&mut one.speeds));
@@ -120,7 +122,7 @@ fn accounts(rate_hz: f64, settings: &Settings) -> Vec<(String, f64)> {
                 let (play, truth) = planted_play(fault, path, seed, rate_hz, 0.0);
                 let prepared = prepare(&play, settings);
                 let noise = noise_of(&[(&play, &prepared)], settings);
-                let smoothed = smooth_play(&play, &prepared, noise, settings);
+                let smoothed = smooth_play(&play, &prepared, noise, settings, &mut SmoothWork::default());
                 let tops = play
                     .movers
                     .iter()
