@@ -2,7 +2,8 @@
 
 use super::clock::clock_frame;
 use super::foresight::{Forecast, Foresight};
-use super::path::{Grid, Path};
+use super::grid::Grid;
+use super::path::Path;
 use super::reach::{Drag, State};
 use crate::base::V2;
 use crate::model::{Field, Settings};

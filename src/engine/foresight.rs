@@ -4,7 +4,8 @@
 //! his present speed if that is higher. Near a sideline he turns up along it at the same speed; the path ends at
 //! the goal line. Constant velocity is available by a setting, for the textbook cases.
 
-use super::path::{Grid, Path};
+use super::grid::Grid;
+use super::path::Path;
 use super::reach::{Drag, State};
 use crate::base::V2;
 use crate::model::{Field, Settings};

@@ -1,11 +1,13 @@
 //! All integration tests in one binary, so that the dataframe library is linked once.
 
 mod carry;
+mod cli;
 mod demo;
 mod demo_write;
 mod dictionary;
 mod engine;
 mod ingest;
+mod job;
 mod kinematics;
 mod layers;
 mod planted;
@@ -13,3 +15,4 @@ mod rating;
 mod report;
 mod stats;
 mod store;
+mod whole;

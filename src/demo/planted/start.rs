@@ -4,8 +4,8 @@ use super::{CARRIER_TOP_YPS, CONTACT_YD, DEFENDER_TOP_YPS, PathKind};
 use crate::base::{Stream, V2};
 use crate::demo::body::{ALPHA_PER_S, Body, Law, STEP_S};
 use crate::demo::plan::Plan;
-use crate::engine::path::{Grid, Path};
 use crate::engine::reach::{Drag, State};
+use crate::engine::{grid::Grid, path::Path};
 use crate::model::Field;
 
 /// Share of full push at which the carrier runs; measured carriers do not use their whole top speed either.

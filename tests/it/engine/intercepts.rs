@@ -5,8 +5,8 @@ use serde::Deserialize;
 use tailchase::base::angle::{from_nautical_rad, nautical_deg};
 use tailchase::base::{V2, units};
 use tailchase::engine::intercept::{EqualTime, SidelineCourse, equal_time, triangle};
-use tailchase::engine::path::{Grid, Path};
 use tailchase::engine::reach::{Drag, State};
+use tailchase::engine::{grid::Grid, path::Path};
 use tailchase::model::Field;
 
 #[derive(Deserialize)]
