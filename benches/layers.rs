@@ -63,7 +63,7 @@ fn a2_read_csv(bencher: Bencher) {
 fn b_group_into_plays(bencher: Bencher) {
     let path: PathBuf = FILES.path().join("parquet");
     let raw = || {
-        let mut source = open(&[path.clone()], &IngestOptions::default(), &Settings::default()).expect("opens");
+        let mut source = open(std::slice::from_ref(&path), &IngestOptions::default(), &Settings::default()).expect("opens");
         source.next_raw().expect("reads").expect("a game")
     };
     bencher.counter(rows()).with_inputs(raw).bench_values(|raw| assert_eq!(raw.assemble().expect("groups").plays.len(), 150));

@@ -13,6 +13,7 @@
 //! | [`clips`](clips()) | which moments to cut, and why |
 //! | [`svg`], [`axis`], [`field_plan`], [`charts`], [`marks`] | drawings |
 //! | [`page`](page()) and its `view_*` | the page |
+//! | [`ranking_chart`](ranking_chart()) | the ranking as a picture of its own |
 
 pub mod account;
 pub mod axis;
@@ -25,6 +26,7 @@ pub mod heading;
 pub mod marks;
 pub mod page;
 pub mod provenance;
+pub mod ranking_chart;
 pub mod rounding;
 pub mod sentence;
 pub mod sheet;
@@ -41,6 +43,7 @@ pub use grid::{Format, csv_safe};
 pub use heading::Heading;
 pub use page::{DrawnPursuit, page};
 pub use provenance::{FindingLine, InputFile, Provenance};
+pub use ranking_chart::ranking_chart;
 pub use sentence::sentence;
 pub use sheet::sheet;
 pub use tables::{clips_table, players_table, teams_table};

@@ -15,4 +15,5 @@ mod rating;
 mod report;
 mod stats;
 mod store;
+mod turned;
 mod whole;

@@ -390,3 +390,24 @@ fn missing_is_a_dash() {
     let empty = sheet(&PursuitRow { met_x_yd: f64::NAN, ..PursuitRow::default() }, &[], &Field::CANADIAN);
     assert!(empty.contains("conceded             –\n") && !empty.contains("NaN"), "{empty}");
 }
+
+/// The picture of the ranking: one dot and one pair of whiskers a player, hostile names harmless, nobody with too few.
+#[test]
+fn ranking_picture_shows_who_had_enough() {
+    let player = |rank: i64, name: &str, too_few: bool| PlayerRow {
+        rank,
+        player: rank.to_string(),
+        name: Some(name.to_string()),
+        too_few,
+        own_low_yd: Some(0.1),
+        own_yd: Some(0.5 * rank as f64),
+        own_high_yd: Some(rank as f64 + 0.2),
+        ..PlayerRow::default()
+    };
+    let players = [player(1, "O'<b>&", false), player(2, "Brolo Tesk", false), player(3, "Seldom Seen", true)];
+    let svg = tailchase::report::ranking_chart(&players).expect("two to show");
+    assert_eq!(svg.matches("<circle").count(), 2);
+    assert!(svg.contains("Brolo Tesk") && !svg.contains("Seldom Seen") && !svg.contains("<b>"));
+    assert!(!svg.contains("NaN") && !svg.contains("inf"));
+    assert!(tailchase::report::ranking_chart(&players[2..]).is_none());
+}
