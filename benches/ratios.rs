@@ -76,6 +76,7 @@ fn audit(input: &Path, out: &Path, threads: Option<NonZeroUsize>, rows: u64) {
         threads,
         frames: FramesMode::Told,
         fresh: true,
+        sensitivity: false,
     };
     let summary = run_audit(&request, &Silent).expect("audits");
     assert_eq!(summary.info.rows.read, rows);

@@ -77,7 +77,7 @@ pub fn judge(play: &Play, prepared: &Prepared, smoothed: &Smoothed, tops: &BTree
 fn top_of(play: &Play, mover: usize, tops: &BTreeMap<Arc<str>, TopSpeed>, settings: &Settings) -> TopSpeed {
     let mover = &play.movers[mover];
     tops.get(&mover.id).copied().unwrap_or_else(|| {
-        let yps = group_top_yps(mover.position.as_deref());
+        let yps = group_top_yps(mover.position.as_deref()) * settings.motion.top_speed_scale;
         TopSpeed { yps, sigma_yps: yps * settings.motion.top_speed_sigma_share }
     })
 }

@@ -1,7 +1,7 @@
 //! `tailchase audit`: the whole job.
 
 use super::outcome::worries;
-use super::print::{note, print};
+use super::print::{note, print, tell_set_aside, tell_without_side};
 use super::progress::Bar;
 use super::typed::{Common, FormatWord, InputArgs};
 use super::{CliError, Outcome, needs};
@@ -36,6 +36,10 @@ pub struct AuditArgs {
     /// Start over: do every game again, and drop games that are not among the files
     #[arg(long)]
     pub fresh: bool,
+    /// Audit again under eight other settings (top speed, drag, their doubt, reach) and say how far each rank moves;
+    /// takes nine times as long
+    #[arg(long)]
+    pub sensitivity: bool,
     /// Threads to work with [default: all cores]; the results are the same for any number
     #[arg(long, value_name = "N")]
     pub threads: Option<NonZeroUsize>,
@@ -79,6 +83,8 @@ fn tell(summary: &AuditSummary, worries: &[String], quiet: bool) {
     if let Some(share) = info.beyond_model_share {
         note(quiet, &format!("check: in {:.1} % of running frames a player out-does his motion model", 100.0 * share));
     }
+    tell_set_aside(summary.broken_accounts, quiet);
+    tell_without_side(summary.without_side, quiet);
     for worry in worries {
         note(quiet, &format!("needs eyes: {worry}"));
     }

@@ -5,8 +5,8 @@ use super::rank::Choice;
 use super::typed::FormatWord;
 use super::{CliError, Outcome};
 use crate::model::Ending;
-use crate::report::{ClipFilter, ClipOrder, Heading, clips as pick, clips_table};
-use crate::store::read_audit_info;
+use crate::report::{ClipFilter, ClipOrder, ClipPicker, Heading, clips_table};
+use crate::store::{BriefRow, read_audit_info};
 use clap::{Args, ValueEnum};
 use std::path::PathBuf;
 
@@ -112,7 +112,14 @@ fn filter(typed: &ClipsArgs) -> ClipFilter {
 pub fn run(typed: &ClipsArgs) -> Result<Outcome, CliError> {
     read_audit_info(&typed.out)?;
     let choice = Choice { side: typed.side.clone(), game: typed.game.clone(), ..Choice::default() };
-    let list = pick(&choice.read(&typed.out)?, &filter(typed));
-    print(&clips_table(&list, typed.format.into()))?;
+    let want = filter(typed);
+    let mut picker = ClipPicker::new(&want);
+    let of_game = |rows: &[BriefRow]| {
+        let mut picker = ClipPicker::new(&want);
+        picker.see(rows);
+        picker
+    };
+    choice.each_game(&typed.out, of_game, |game| picker.merge(game))?;
+    print(&clips_table(&picker.clips(), typed.format.into()))?;
     Ok(Outcome::Clean)
 }

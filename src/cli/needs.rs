@@ -56,5 +56,6 @@ pub fn audit_request(typed: &AuditArgs) -> Result<AuditRequest, CliError> {
             FramesWord::All => FramesMode::All,
         },
         fresh: typed.fresh,
+        sensitivity: typed.sensitivity,
     })
 }

@@ -22,3 +22,17 @@ pub fn note(quiet: bool, line: &str) {
         let _ = writeln!(std::io::stderr(), "{line}");
     }
 }
+
+/// Says how many charged pursuits count as no chance, where there are any.
+pub fn tell_set_aside(broken_accounts: usize, quiet: bool) {
+    if broken_accounts > 0 {
+        note(quiet, &format!("{broken_accounts} charged pursuits have no whole account; they are listed but count as no chance"));
+    }
+}
+
+/// Says how many pursuits are in no side's figures, where there are any.
+pub fn tell_without_side(without_side: usize, quiet: bool) {
+    if without_side > 0 {
+        note(quiet, &format!("{without_side} pursuits of defenders without a side are in no side's figures"));
+    }
+}

@@ -1,11 +1,12 @@
 //! `tailchase rank`: the ranking again, of all or of a choice.
 
-use super::print::{note, print};
+use super::print::{note, print, tell_set_aside};
 use super::typed::{Common, FormatWord};
 use super::{CliError, Outcome, read_settings};
-use crate::rating::rank_players;
+use crate::pipeline::each_game_in_brief;
+use crate::rating::{Season, rank};
 use crate::report::players_table;
-use crate::store::{PursuitRow, read_all, read_audit_info};
+use crate::store::{BriefRow, read_audit_info};
 use clap::Args;
 use std::path::{Path, PathBuf};
 
@@ -47,7 +48,7 @@ pub struct Choice {
 }
 
 impl Choice {
-    fn takes(&self, row: &PursuitRow) -> bool {
+    fn takes(&self, row: &BriefRow) -> bool {
         let fits = |want: &Option<String>, found: Option<&str>| {
             want.as_deref().is_none_or(|want| found.is_some_and(|found| found.trim().to_lowercase() == want.trim().to_lowercase()))
         };
@@ -57,23 +58,44 @@ impl Choice {
             && self.game.as_ref().is_none_or(|game| *game == row.game)
     }
 
-    /// The chosen pursuits of an audit.
+    /// What `of` makes of the chosen pursuits of an audit, game by game; `of` runs on any thread.
     ///
     /// # Errors
     /// When a table cannot be read.
-    pub fn read(&self, out: &Path) -> Result<Vec<PursuitRow>, CliError> {
-        let mut rows: Vec<PursuitRow> = read_all(out)?;
-        rows.retain(|row| self.takes(row));
-        Ok(rows)
+    pub fn each_game<T: Send>(&self, out: &Path, of: impl Fn(&[BriefRow]) -> T + Sync, mut take: impl FnMut(T)) -> Result<(), CliError> {
+        let of_chosen = |mut rows: Vec<BriefRow>| {
+            rows.retain(|row| self.takes(row));
+            of(&rows)
+        };
+        Ok(each_game_in_brief(out, self.game.as_deref(), of_chosen, |game| {
+            take(game);
+            Ok(())
+        })?)
+    }
+
+    /// The chosen pursuits of an audit as a season to rank.
+    ///
+    /// # Errors
+    /// When a table cannot be read.
+    pub fn season(&self, out: &Path) -> Result<Season, CliError> {
+        let mut season = Season::default();
+        let of_game = |rows: &[BriefRow]| {
+            let mut game = Season::default();
+            game.add(rows);
+            game
+        };
+        self.each_game(out, of_game, |game| season.merge(game))?;
+        Ok(season)
     }
 }
 
 pub fn run(typed: &RankArgs, common: &Common) -> Result<Outcome, CliError> {
     let info = read_audit_info(&typed.out)?;
     let settings = typed.settings.as_deref().map(read_settings).transpose()?.unwrap_or(info.settings);
-    let players = rank_players(&typed.choice.read(&typed.out)?, &settings.rating);
-    print(&players_table(&players, typed.format.into()))?;
-    if players.is_empty() {
+    let season = typed.choice.season(&typed.out)?;
+    print(&players_table(&rank(&season, &settings.rating).players, typed.format.into()))?;
+    tell_set_aside(season.set_aside(), common.quiet);
+    if season.is_empty() {
         note(common.quiet, "nobody in this audit fits that choice");
     }
     Ok(Outcome::Clean)

@@ -1,10 +1,10 @@
 //! `tailchase scout`: the defences compared; one of them looked at closely.
 
-use super::print::{note, print};
+use super::print::{print, tell_set_aside, tell_without_side};
 use super::rank::Choice;
 use super::typed::{Common, FormatWord};
 use super::{CliError, Outcome, read_settings};
-use crate::rating::{SideSplit, compare_sides, rank_players};
+use crate::rating::{SideSplit, compare_sides, rank};
 use crate::report::grid::{Align, Cell, Grid, aligned, csv_text, json_text};
 use crate::report::text::number;
 use crate::report::{players_table, teams_table};
@@ -38,11 +38,10 @@ pub struct ScoutArgs {
 pub fn run(typed: &ScoutArgs, common: &Common) -> Result<Outcome, CliError> {
     let info = read_audit_info(&typed.out)?;
     let settings = typed.settings.as_deref().map(read_settings).transpose()?.unwrap_or(info.settings).rating;
-    let rows = Choice::default().read(&typed.out)?;
-    let sides = compare_sides(&rows, &settings);
-    if sides.rows_without_side > 0 {
-        note(common.quiet, &format!("{} pursuits of defenders without a side are left out", sides.rows_without_side));
-    }
+    let season = Choice::default().season(&typed.out)?;
+    let sides = compare_sides(&season, &settings);
+    tell_without_side(sides.rows_without_side, common.quiet);
+    tell_set_aside(season.set_aside(), common.quiet);
     let Some(wanted) = &typed.side else {
         print(&teams_table(&sides.teams, typed.format.into()))?;
         return Ok(Outcome::Clean);
@@ -58,7 +57,7 @@ pub fn run(typed: &ScoutArgs, common: &Common) -> Result<Outcome, CliError> {
         return Ok(Outcome::Clean);
     }
     // Ranked among all, so that a rank means the same here as in the whole ranking.
-    let mut players = rank_players(&rows, &settings);
+    let mut players = rank(&season, &settings).players;
     players.retain(|player| player.side.as_deref().is_some_and(is_wanted));
     print(&players_table(&players, typed.format.into()))?;
     if typed.format == FormatWord::Table {

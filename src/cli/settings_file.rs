@@ -29,6 +29,7 @@ pub const RANGES: &[(&str, &str, f64, f64)] = &[
     ("motion", "alpha_per_s", 0.1, 1000.0),
     ("motion", "top_speed_sigma_share", 0.0, 1.0),
     ("motion", "top_speed_quantile", 0.5, 1.0),
+    ("motion", "top_speed_scale", 0.5, 2.0),
     ("motion", "top_speed_prior_s", 0.0, 1000.0),
     ("motion", "foresight_pull", 0.0, 10.0),
     ("motion", "foresight_pace", 0.0, 2.0),

@@ -2,9 +2,10 @@
 
 use super::print::print;
 use super::{CliError, Outcome};
+use crate::pipeline::each_game_in_brief;
 use crate::rating::own_yd;
 use crate::report::sheet;
-use crate::store::{FrameRow, PursuitRow, Row, each_game, game_folder, read_audit_info, read_table};
+use crate::store::{BriefRow, FrameRow, PursuitRow, Row, game_folder, read_audit_info, read_row, read_table};
 use clap::Args;
 use std::path::{Path, PathBuf};
 
@@ -32,7 +33,7 @@ pub struct SheetArgs {
 }
 
 impl SheetArgs {
-    fn takes(&self, row: &PursuitRow) -> bool {
+    fn takes(&self, row: &BriefRow) -> bool {
         let same = |name: &str, want: &str| name.trim().to_lowercase() == want.trim().to_lowercase();
         let defender = |want: &String| *want == row.defender || row.defender_name.as_deref().is_some_and(|name| same(name, want));
         self.game.as_ref().is_none_or(|game| *game == row.game)
@@ -61,29 +62,24 @@ pub fn run(typed: &SheetArgs) -> Result<Outcome, CliError> {
 
 /// The pursuit with most own yards; a charged one before one that is only listed, the first in file order among equals.
 fn costliest(typed: &SheetArgs) -> Result<Option<PursuitRow>, CliError> {
-    let mut best: Option<PursuitRow> = None;
-    let cost = |row: &PursuitRow| (row.charged, own_yd(row).unwrap_or(f64::NEG_INFINITY));
-    let costs_more = |row: &PursuitRow, best: &PursuitRow| {
+    let cost = |row: &BriefRow| (row.charged, own_yd(row).unwrap_or(f64::NEG_INFINITY));
+    let costs_more = |row: &BriefRow, best: &BriefRow| {
         let ((charged, yards), (best_charged, best_yards)) = (cost(row), cost(best));
         charged.cmp(&best_charged).then(yards.total_cmp(&best_yards)).is_gt()
     };
-    let mut take = |rows: Vec<PursuitRow>| {
-        for row in rows.into_iter().filter(|row| typed.takes(row)) {
-            if best.as_ref().is_none_or(|best| costs_more(&row, best)) {
-                best = Some(row);
-            }
-        }
+    let first_of = |best: Option<(usize, BriefRow)>, row: (usize, BriefRow)| match best {
+        Some(best) if !costs_more(&row.1, &best.1) => Some(best),
+        _ => Some(row),
     };
-    match &typed.game {
-        Some(game) => {
-            let path = game_folder(&typed.out, PursuitRow::TABLE, game);
-            if path.is_file() {
-                take(read_table(&path)?);
-            }
-        }
-        None => each_game(&typed.out, take)?,
-    }
-    Ok(best)
+    // Of each game the costliest with its row number, so that only one game is then read with all of its columns.
+    let of_game = |rows: Vec<BriefRow>| rows.into_iter().enumerate().filter(|(_, row)| typed.takes(row)).fold(None, first_of);
+    let mut best = None;
+    each_game_in_brief(&typed.out, typed.game.as_deref(), of_game, |found| {
+        best = found.into_iter().fold(best.take(), first_of);
+        Ok(())
+    })?;
+    let Some((place, row)) = best else { return Ok(None) };
+    Ok(read_row(&game_folder(&typed.out, PursuitRow::TABLE, &row.game), place)?)
 }
 
 /// The pursuit's frames, where the audit kept them.

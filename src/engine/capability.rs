@@ -131,6 +131,7 @@ impl SpeedBook {
                         seen_yps.max(pooled_yps)
                     }
                 };
+                let yps = yps * settings.top_speed_scale;
                 (id.clone(), TopSpeed { yps, sigma_yps: yps * settings.top_speed_sigma_share })
             })
             .collect()

@@ -15,6 +15,8 @@ const LEAST_SCATTER_YD: f64 = 0.02;
 /// Median of a Rayleigh distribution of unit scale.
 const RAYLEIGH_MEDIAN: f64 = 1.177_410_022_515_474_7;
 const LONGEST: usize = 3;
+/// Places to either side over which the scatter near a spike is taken: so many that the longest spike cannot move their median.
+const AROUND: usize = 12;
 
 /// Whether any place lies off its neighbours' chord by more than noise and the hardest cut can explain.
 pub(super) fn may_have_any(pos_yd: &[V2], times: &[f64], settings: &SmoothingSettings) -> bool {
@@ -54,7 +56,13 @@ pub(super) fn set_aside(
         let share = (time_s[s.frame] - time_s[a.frame]) / (time_s[b.frame] - time_s[a.frame]);
         s.pos_yd - a.pos_yd.lerp(b.pos_yd, share)
     };
-    let scatter = scatter_yd(spots.windows(3).map(|w| chord(&w[0], &w[2], &w[1]).norm2()).collect());
+    let off2: Vec<f64> = spots.windows(3).map(|w| chord(&w[0], &w[2], &w[1]).norm2()).collect();
+    let whole = scatter_yd(off2.clone());
+    // A track that mostly stands still scatters less than the runner: where he runs, what is usual there counts.
+    let scatter_at = |k: usize| {
+        let around = k.saturating_sub(AROUND + 1)..(k + AROUND).min(off2.len());
+        whole.max(scatter_yd(off2[around].to_vec()))
+    };
     let is_spike = |k: usize, m: usize| {
         let [a2, a1] = [&spots[k - 2], &spots[k - 1]];
         let [b1, b2] = [&spots[k + m], &spots[k + m + 1]];
@@ -62,13 +70,15 @@ pub(super) fn set_aside(
         if whole_s > 2.0 * settings.bridge_s {
             return false;
         }
-        spots[k..k + m].iter().all(|s| {
+        let is_beside = |s: &Spot, scatter: f64| {
             let bend = 0.5 * HARDEST_YPSS * (time_s[s.frame] - time_s[a1.frame]) * (time_s[b1.frame] - time_s[s.frame]);
             let most = settings.gate_sigmas * scatter + bend;
             let beside = chord(a1, b1, s);
             let is_off = |off: V2| off.norm2() > most * most && off.dot(beside) > 0.0;
             is_off(beside) && is_off(chord(a2, a1, s)) && is_off(chord(b1, b2, s))
-        })
+        };
+        let spike = &spots[k..k + m];
+        spike.iter().all(|s| is_beside(s, whole)) && spike.iter().all(|s| is_beside(s, scatter_at(k)))
     };
     let mut is_out = vec![false; spots.len()];
     let mut k = 2;

@@ -62,6 +62,8 @@ pub struct AuditRequest {
     pub threads: Option<NonZeroUsize>,
     pub frames: FramesMode,
     pub fresh: bool,
+    /// Rank again under other settings, to see how much a place hangs on them.
+    pub sensitivity: bool,
 }
 
 /// An audit that was run.
@@ -73,4 +75,8 @@ pub struct AuditSummary {
     pub page: PathBuf,
     pub games_done: usize,
     pub games_kept: usize,
+    /// Charged pursuits without a whole account: listed, but no chance.
+    pub broken_accounts: usize,
+    /// Pursuits of defenders without a side: in no side's figures.
+    pub without_side: usize,
 }

@@ -4,7 +4,8 @@ use super::error::PipelineError;
 use super::finish::finish;
 use super::game::{AuditedGame, audit_game};
 use super::request::{AuditRequest, AuditSummary, Progress, Unit};
-use crate::ingest::{self, Game, RawGame, Source};
+use super::sensitivity::variants;
+use crate::ingest::{self, Game, IngestOptions, RawGame, Source};
 use crate::model::{SetAside, SourceRow};
 use crate::store::{
     GameMark, GameTables, InputEntry, NoiseEntry, OutDir, RowAccount, RunInfo, SetAsideRow, finding_entries, fingerprint, prepare_out,
@@ -12,6 +13,7 @@ use crate::store::{
 };
 use std::collections::BTreeSet;
 use std::num::NonZeroUsize;
+use std::path::PathBuf;
 
 /// Runs an audit from files to report.
 ///
@@ -52,8 +54,9 @@ impl<'a> Run<'a> {
     fn new(request: &'a AuditRequest, source: Source, out: OutDir, progress: &'a dyn Progress) -> Result<Run<'a>, PipelineError> {
         let marks = if request.fresh { Default::default() } else { read_marks(out.path())? };
         let settings = toml::to_string(&request.settings).unwrap_or_default();
-        let options = format!("{:?} {}", request.ingest, request.frames.word());
-        let made_with = fingerprint(&[env!("CARGO_PKG_VERSION"), &settings, &options]);
+        let options = format!("{:?} {}", request.ingest.mapping, request.frames.word());
+        let tables = table_hashes(&request.ingest)?;
+        let made_with = fingerprint(&[env!("CARGO_PKG_VERSION"), &settings, &options, &tables]);
         Ok(Run { request, source, out, progress, made_with, marks, seen: BTreeSet::new(), done: BTreeSet::new() })
     }
 
@@ -153,8 +156,15 @@ impl<'a> Run<'a> {
         };
         let loose_rows = set_aside_rows(&loose.set_aside, |file| self.source.files()[file].path.display().to_string());
         let kept = self.seen.difference(&self.done).count();
-        finish(self.out.path(), info, &self.marks, &loose_rows, self.done.len(), kept)
+        let variants = if self.request.sensitivity { variants(self.request, self.progress)? } else { Vec::new() };
+        finish(self.out.path(), info, &self.marks, &loose_rows, &variants, (self.done.len(), kept))
     }
+}
+
+/// Contents of the tables beside the tracks, so that an edited one redoes the games and a moved one does not.
+fn table_hashes(ingest: &IngestOptions) -> Result<String, PipelineError> {
+    let hash = |table: &Option<PathBuf>| table.as_deref().map_or(Ok(String::new()), ingest::content_hash);
+    Ok([hash(&ingest.plays)?, hash(&ingest.players)?, hash(&ingest.film)?].join(" "))
 }
 
 fn audit(raw: RawGame, inputs: Vec<String>, made_with: &str, request: &AuditRequest) -> Result<Finished, PipelineError> {

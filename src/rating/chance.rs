@@ -1,6 +1,6 @@
 //! What counts as a chance, and what it cost by his own doing.
 
-use crate::store::rows::PursuitRow;
+use crate::store::rows::BriefRow;
 
 /// The headings of an account, in yards.
 #[derive(Clone, Copy, Debug, Default, PartialEq)]
@@ -16,7 +16,7 @@ pub struct Account {
 
 impl Account {
     /// The account of a charged pursuit; none when it is not charged, or when a heading is missing or not finite.
-    pub fn of(row: &PursuitRow) -> Option<Account> {
+    pub fn of(row: &BriefRow) -> Option<Account> {
         if !row.charged {
             return None;
         }
@@ -41,18 +41,18 @@ impl Account {
 /// Own yards of a pursuit that is a chance: charged, with a whole account.
 ///
 /// ```
-/// use tailchase::{rating::own_yd, store::PursuitRow};
-/// let mut row = PursuitRow { charged: true, conceded_yd: Some(5.0), ..PursuitRow::default() };
+/// use tailchase::{rating::own_yd, store::BriefRow};
+/// let mut row = BriefRow { charged: true, conceded_yd: Some(5.0), ..BriefRow::default() };
 /// assert_eq!(own_yd(&row), None); // the headings are missing
 /// (row.late_yd, row.flat_yd, row.deep_yd) = (Some(1.0), Some(2.0), Some(0.0));
 /// (row.pace_yd, row.block_yd, row.move_yd) = (Some(0.5), Some(1.0), Some(0.5));
 /// assert_eq!(own_yd(&row), Some(3.5));
 /// ```
-pub fn own_yd(row: &PursuitRow) -> Option<f64> {
+pub fn own_yd(row: &BriefRow) -> Option<f64> {
     Account::of(row).map(|a| a.own_yd())
 }
 
 /// Whether a pursuit is charged and yet has no whole account: set aside and counted, never taken as zero.
-pub fn is_broken(row: &PursuitRow) -> bool {
+pub fn is_broken(row: &BriefRow) -> bool {
     row.charged && row.conceded_yd.is_some() && Account::of(row).is_none()
 }

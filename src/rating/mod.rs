@@ -1,24 +1,28 @@
 //! From pursuits to players and teams: pooling, adjustment for the situation, ranks with intervals, sensitivity.
-//! No coordinates here: everything comes from the pursuits table.
+//! No coordinates here: everything comes from the pursuits table, which a [`Season`] keeps in packed form.
 
 pub mod chance;
 pub mod measure;
-pub mod player;
+mod packed;
+mod player;
 pub mod position;
 pub mod position_effect;
 pub mod ranking;
-pub mod roster;
+mod roster;
 pub mod scout;
+pub mod season;
 pub mod sensitivity;
 pub mod situation;
-pub mod steering;
+mod steering;
 pub mod team;
+mod texts;
 
 pub use chance::own_yd;
 pub use measure::{Measured, PoolingReport};
 pub use position::Group;
 pub use ranking::{Ranking, rank, rank_players};
 pub use scout::{SideComparison, SideSplit, compare_sides};
+pub use season::Season;
 pub use sensitivity::{rank_swing, write_rank_swing};
 pub use situation::{SituationFit, Term};
 pub use team::rank_teams;

@@ -1,7 +1,8 @@
 //! A player's row: counts, means per chance, and the pooled figures put in their places.
 
 use super::measure::Measured;
-use super::roster::{Chance, Defender, grouped, mean};
+use super::packed::Chance;
+use super::roster::{Defender, Placed, mean};
 use super::steering::Steering;
 use crate::model::settings::RatingSettings;
 use crate::stats::Circular;
@@ -21,7 +22,7 @@ pub struct Figures {
 /// Fills a player's row. Shares, lean, line rate and closing speed are over his chances, counts over all his pursuits.
 pub fn player_row(defender: &Defender<'_>, figures: &Figures, settings: &RatingSettings) -> PlayerRow {
     let chances = &defender.chances;
-    let per_chance = |value: fn(&Chance<'_>) -> f64| mean(chances.iter().map(|c| Some(value(c))));
+    let per_chance = |value: fn(&Chance) -> Option<f64>| mean(chances.iter().map(|c| value(c.chance)));
     let text = |word: Option<&str>| word.map(str::to_owned);
     let own = figures.own_adjusted.and_then(|m| m.pooled);
     let efficiency = figures.efficiency.and_then(|m| m.pooled);
@@ -31,15 +32,15 @@ pub fn player_row(defender: &Defender<'_>, figures: &Figures, settings: &RatingS
         rank_low: whole(figures.rank.1),
         rank_high: whole(figures.rank.2),
         player: defender.id.to_owned(),
-        name: text(defender.usual(|r| r.defender_name.as_deref())),
-        side: text(defender.usual(|r| r.defender_side.as_deref())),
-        position: text(defender.usual(|r| r.position.as_deref())),
-        games: whole(defender.games()),
-        pursuits: whole(defender.rows.len()),
+        name: text(defender.name),
+        side: text(defender.side),
+        position: text(defender.position),
+        games: whole(defender.games),
+        pursuits: i64::from(defender.tally.pursuits),
         chances: whole(chances.len()),
-        stops: whole(defender.endings("stop")),
-        contacts_lost: whole(defender.endings("contact_lost")),
-        chances_lost: whole(defender.endings("chance_lost")),
+        stops: i64::from(defender.tally.stops),
+        contacts_lost: i64::from(defender.tally.contacts_lost),
+        chances_lost: i64::from(defender.tally.chances_lost),
         too_few: chances.len() < settings.too_few as usize,
         efficiency_raw: figures.efficiency.map(|m| m.raw),
         efficiency_se: se(figures.efficiency),
@@ -52,18 +53,18 @@ pub fn player_row(defender: &Defender<'_>, figures: &Figures, settings: &RatingS
         own_yd: own.map(|p| p.value),
         own_low_yd: own.map(|p| p.low),
         own_high_yd: own.map(|p| p.high),
-        conceded_yd: per_chance(|c| c.account.conceded_yd),
-        late_yd: per_chance(|c| c.account.late_yd),
-        flat_yd: per_chance(|c| c.account.flat_yd),
-        deep_yd: per_chance(|c| c.account.deep_yd),
-        pace_yd: per_chance(|c| c.account.pace_yd),
-        block_yd: per_chance(|c| c.account.block_yd),
-        move_yd: per_chance(|c| c.account.move_yd),
-        on_course_share: per_chance(|c| c.row.on_course_share),
+        conceded_yd: per_chance(|c| Some(c.account.conceded_yd)),
+        late_yd: per_chance(|c| Some(c.account.late_yd)),
+        flat_yd: per_chance(|c| Some(c.account.flat_yd)),
+        deep_yd: per_chance(|c| Some(c.account.deep_yd)),
+        pace_yd: per_chance(|c| Some(c.account.pace_yd)),
+        block_yd: per_chance(|c| Some(c.account.block_yd)),
+        move_yd: per_chance(|c| Some(c.account.move_yd)),
+        on_course_share: per_chance(|c| c.on_course_share.get()),
         lean_deg: lean_deg(chances),
-        line_rate_degps: per_chance(|c| c.row.line_rate_median_degps.abs()),
-        closing_yps: per_chance(|c| c.row.closing_median_yps),
-        top_speed_yps: top_speed_yps(defender),
+        line_rate_degps: per_chance(|c| c.line_rate_median_degps.get().map(f64::abs)),
+        closing_yps: per_chance(|c| c.closing_median_yps.get()),
+        top_speed_yps: defender.top_speed_yps,
         steer_n: figures.steering.n,
         steer_k_per_s: figures.steering.k_per_s,
         steer_word: text(figures.steering.word),
@@ -71,15 +72,9 @@ pub fn player_row(defender: &Defender<'_>, figures: &Figures, settings: &RatingS
     }
 }
 
-fn lean_deg(chances: &[Chance<'_>]) -> Option<f64> {
-    let leans_rad: Vec<f64> = chances.iter().filter_map(|c| c.row.lean_deg.filter(|v| v.is_finite()).map(f64::to_radians)).collect();
+fn lean_deg(chances: &[Placed<'_>]) -> Option<f64> {
+    let leans_rad: Vec<f64> = chances.iter().filter_map(|c| c.chance.lean_deg.get().map(f64::to_radians)).collect();
     Circular::of(&leans_rad)?.mean_rad.map(f64::to_degrees)
-}
-
-/// Mean over games of the game's mean, so that a game with many pursuits counts no more than another.
-fn top_speed_yps(defender: &Defender<'_>) -> Option<f64> {
-    let games = grouped(defender.rows.iter().map(|r| (r.game.as_str(), Some(r.top_speed_yps))));
-    mean(games.iter().map(|g| mean(g.iter().map(|v| Some(*v)))))
 }
 
 fn whole(n: usize) -> i64 {

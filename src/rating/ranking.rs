@@ -1,11 +1,11 @@
 //! The ranking of players, and what it rests on.
 
-use super::chance::is_broken;
 use super::measure::{Measured, PoolingReport, pool_players, raw_means};
 use super::player::{Figures, player_row};
 use super::position::Group;
 use super::position_effect::{PositionOffset, position_offsets};
 use super::roster::{Defender, defenders, grouped};
+use super::season::Season;
 use super::situation::{SituationFit, adjust};
 use super::steering::steering;
 use crate::model::settings::RatingSettings;
@@ -35,9 +35,9 @@ pub struct Ranking {
     pub set_aside: usize,
 }
 
-/// Ranks all defenders who have a pursuit; see [`rank`].
+/// Ranks all defenders of rows that are at hand; see [`rank`].
 pub fn rank_players(rows: &[PursuitRow], settings: &RatingSettings) -> Vec<PlayerRow> {
-    rank(rows, settings).players
+    rank(&Season::of(rows), settings).players
 }
 
 /// Ranks all defenders who have a pursuit by their own yards per chance: adjusted for the situation, partially pooled, the
@@ -47,19 +47,20 @@ pub fn rank_players(rows: &[PursuitRow], settings: &RatingSettings) -> Vec<Playe
 /// them, with a rank interval from first to last: one chance at the pooled mean is no place in a ranking. Equal pooled values, as when nothing at all can be told between players, are put in
 /// order of the adjusted mean, then of the id; their rank intervals say that it means nothing. Players without a
 /// chance, or about whose scatter nothing is known, follow in order of id, with a rank interval from first to last.
-/// The order of the rows does not matter. A `level` that is no share between 0 and 1 is read as 0.95.
-pub fn rank(rows: &[PursuitRow], settings: &RatingSettings) -> Ranking {
+/// The order of the rows that the season was made of does not matter. A `level` that is no share between 0 and 1 is read as 0.95.
+pub fn rank(season: &Season, settings: &RatingSettings) -> Ranking {
     let level = if settings.level > 0.0 && settings.level < 1.0 { settings.level } else { FALLBACK_LEVEL };
-    let defenders = defenders(rows);
-    let mut raw = raw_means(&by_game(&defenders, |d| d.chances.iter().map(|c| c.account.own_yd()).collect()), RESOLUTION_YD);
-    let own = pool_players(&mut raw, level);
-    let (mut adjusted, situation, positions) = adjusted_means(&defenders);
-    let own_adjusted = pool_players(&mut adjusted, level);
-    let efficiencies: Vec<Vec<Vec<f64>>> =
-        defenders.iter().map(|d| grouped(d.rows.iter().map(|r| (r.game.as_str(), r.efficiency)))).collect();
+    let mut defenders = defenders(season);
+    // First what needs its values no longer than this, so that they are gone before the regression takes its room.
+    let efficiencies: Vec<Vec<Vec<f64>>> = defenders.iter_mut().map(|d| std::mem::take(&mut d.efficiencies).values).collect();
     let mut efficiency = raw_means(&efficiencies, RESOLUTION_EFFICIENCY);
+    drop(efficiencies);
     let efficiency_report = pool_players(&mut efficiency, level);
-    let steering = steering(&defenders, level);
+    let steering = steering(&mut defenders, level);
+    let mut raw = raw_means(&own_by_game(&defenders), RESOLUTION_YD);
+    let own = pool_players(&mut raw, level);
+    let (mut adjusted, situation, positions) = adjusted_means(season, &defenders);
+    let own_adjusted = pool_players(&mut adjusted, level);
 
     let has_enough: Vec<bool> = defenders.iter().map(|d| d.chances.len() >= settings.too_few as usize).collect();
     let intervals = intervals(&defenders, &adjusted, &has_enough, settings, level);
@@ -88,30 +89,26 @@ pub fn rank(rows: &[PursuitRow], settings: &RatingSettings) -> Ranking {
             player_row(&defenders[i], &figures, settings)
         })
         .collect();
-    let set_aside = rows.iter().filter(|r| is_broken(r)).count();
-    Ranking { players, own, own_adjusted, efficiency: efficiency_report, situation, positions, set_aside }
+    Ranking { players, own, own_adjusted, efficiency: efficiency_report, situation, positions, set_aside: season.set_aside() }
 }
 
-/// Values of each defender's chances sorted by game.
-fn by_game(defenders: &[Defender<'_>], values: impl Fn(&Defender<'_>) -> Vec<f64>) -> Vec<Vec<Vec<f64>>> {
-    defenders.iter().map(|d| grouped(d.chances.iter().map(|c| c.row.game.as_str()).zip(values(d).into_iter().map(Some)))).collect()
+/// Own yards of each defender's chances sorted by game.
+fn own_by_game(defenders: &[Defender<'_>]) -> Vec<Vec<Vec<f64>>> {
+    defenders.iter().map(|d| grouped(d.chances.iter().map(|c| (c.game, c.chance.account.own_yd())))).collect()
 }
 
 /// Means after the adjustment for the situation and for the position, their variances enlarged by the doubt about both.
-fn adjusted_means(defenders: &[Defender<'_>]) -> (Vec<Option<Measured>>, Option<SituationFit>, Vec<PositionOffset>) {
-    let moved = adjust(defenders);
-    let values: Vec<Vec<Vec<f64>>> = defenders
-        .iter()
-        .zip(&moved.own_yd)
-        .map(|(d, own)| grouped(d.chances.iter().zip(own).map(|(c, v)| (c.row.game.as_str(), Some(*v)))))
-        .collect();
+fn adjusted_means(season: &Season, defenders: &[Defender<'_>]) -> (Vec<Option<Measured>>, Option<SituationFit>, Vec<PositionOffset>) {
+    let moved = adjust(season, defenders);
+    let values: Vec<Vec<Vec<f64>>> =
+        defenders.iter().zip(&moved.own_yd).map(|(d, own)| grouped(d.chances.iter().zip(own).map(|(c, v)| (c.game, *v)))).collect();
     let mut means = raw_means(&values, RESOLUTION_YD);
     for (mean, extra) in means.iter_mut().zip(&moved.extra_variance) {
         if let Some(variance) = mean.as_mut().and_then(|m| m.variance.as_mut()) {
             *variance += extra;
         }
     }
-    let groups: Vec<Option<Group>> = defenders.iter().map(|d| d.usual(|r| r.position.as_deref()).and_then(Group::of)).collect();
+    let groups: Vec<Option<Group>> = defenders.iter().map(|d| d.position.and_then(Group::of)).collect();
     let offsets = position_offsets(&groups, &means);
     for (mean, group) in means.iter_mut().zip(&groups) {
         if let Some(m) = mean.as_mut()

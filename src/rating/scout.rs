@@ -1,9 +1,14 @@
 //! Sides compared: where from a defence is beaten, and at which positions.
 
+use super::packed::Chance;
 use super::position::Group;
+use super::roster::Placed;
+use super::season::Season;
 use super::team::{by_side, own_yards, rank_teams};
+use super::texts::Code;
 use crate::model::settings::RatingSettings;
-use crate::store::rows::{PursuitRow, TeamRow};
+use crate::store::rows::TeamRow;
+use std::collections::{BTreeMap, BTreeSet};
 
 /// A part of a side's chances.
 #[derive(Clone, Debug, PartialEq)]
@@ -29,42 +34,41 @@ pub struct SideComparison {
 }
 
 /// Compares the sides that defend in these pursuits. Parts without a chance are not listed.
-pub fn compare_sides(rows: &[PursuitRow], settings: &RatingSettings) -> SideComparison {
+pub fn compare_sides(season: &Season, settings: &RatingSettings) -> SideComparison {
     let mut splits = Vec::new();
-    for (side, rows) in by_side(rows) {
+    for (name, side) in by_side(season) {
+        let mut add = |by, part, takes: &dyn Fn(&Chance) -> bool| {
+            let chosen: Vec<Placed<'_>> = side.chances.iter().copied().filter(|p| takes(p.chance)).collect();
+            splits.extend(split(name, by, part, &chosen, settings));
+        };
         for part in ["ahead", "left", "right", "behind"] {
-            let chosen: Vec<&PursuitRow> = rows.iter().copied().filter(|r| start_part(r.start_bearing_deg) == Some(part)).collect();
-            splits.extend(split(side, "start", part, &chosen, settings));
+            add("start", part, &|c| c.start_bearing_deg.get().is_some_and(|deg| start_part(deg) == part));
         }
-        let group = |r: &PursuitRow| r.position.as_deref().and_then(Group::of);
-        let mut groups: Vec<Group> = rows.iter().filter_map(|r| group(r)).collect();
-        groups.sort_unstable();
-        groups.dedup();
+        let mut of_position: BTreeMap<Code, Option<Group>> = BTreeMap::new();
+        for position in side.chances.iter().filter_map(|p| p.chance.position) {
+            of_position.entry(position).or_insert_with(|| Group::of(season.text(position)));
+        }
+        let group = |c: &Chance| c.position.and_then(|code| of_position.get(&code).copied().flatten());
+        let groups: BTreeSet<Group> = of_position.values().copied().flatten().collect();
         for wanted in groups {
-            let chosen: Vec<&PursuitRow> = rows.iter().copied().filter(|r| group(r) == Some(wanted)).collect();
-            splits.extend(split(side, "position", wanted.word(), &chosen, settings));
+            add("position", wanted.word(), &|c| group(c) == Some(wanted));
         }
     }
-    let rows_without_side = rows.iter().filter(|r| r.defender_side.is_none()).count();
-    SideComparison { teams: rank_teams(rows, settings), splits, rows_without_side }
+    SideComparison { teams: rank_teams(season, settings), splits, rows_without_side: season.without_side() }
 }
 
 /// Quarters around the carrier, 0° straight downfield, left positive; an edge belongs to the part ahead or behind.
-fn start_part(bearing_deg: f64) -> Option<&'static str> {
-    let away_deg = bearing_deg.abs();
-    if !away_deg.is_finite() {
-        return None;
-    }
-    Some(match away_deg {
-        a if a <= 45.0 => "ahead",
-        a if a >= 135.0 => "behind",
+fn start_part(bearing_deg: f64) -> &'static str {
+    match bearing_deg.abs() {
+        away_deg if away_deg <= 45.0 => "ahead",
+        away_deg if away_deg >= 135.0 => "behind",
         _ if bearing_deg > 0.0 => "left",
         _ => "right",
-    })
+    }
 }
 
-fn split(side: &str, by: &'static str, part: &'static str, rows: &[&PursuitRow], settings: &RatingSettings) -> Option<SideSplit> {
-    let own = own_yards(rows, settings);
+fn split(side: &str, by: &'static str, part: &'static str, chances: &[Placed<'_>], settings: &RatingSettings) -> Option<SideSplit> {
+    let own = own_yards(chances, settings);
     (own.chances > 0).then(|| SideSplit {
         side: side.to_owned(),
         by,

@@ -7,7 +7,10 @@
 //! itself, not below zero: the non-negative garrote of Breiman (1995) for one column at a time. A clear slope keeps nearly
 //! all of itself, a chance one vanishes.
 
-use super::roster::{Chance, Defender};
+use super::packed::Chance;
+use super::roster::Defender;
+use super::season::Season;
+use super::texts::Code;
 use crate::stats::{WithinFit, within_fit};
 use std::collections::BTreeMap;
 
@@ -50,10 +53,10 @@ struct Column {
 }
 
 /// Fits the slopes and moves every chance to the average situation.
-pub fn adjust(defenders: &[Defender<'_>]) -> Adjusted {
-    let raw: Vec<Vec<f64>> = defenders.iter().map(|d| d.chances.iter().map(|c| c.account.own_yd()).collect()).collect();
-    let plain = Adjusted { own_yd: raw.clone(), extra_variance: vec![0.0; defenders.len()], fit: None };
-    let chances: Vec<Chance<'_>> = defenders.iter().flat_map(|d| d.chances.iter().copied()).collect();
+pub fn adjust(season: &Season, defenders: &[Defender<'_>]) -> Adjusted {
+    let raw: Vec<Vec<f64>> = defenders.iter().map(|d| d.chances.iter().map(|c| c.chance.account.own_yd()).collect()).collect();
+    let plain = |raw| Adjusted { own_yd: raw, extra_variance: vec![0.0; defenders.len()], fit: None };
+    let chances: Vec<&Chance> = defenders.iter().flat_map(|d| d.chances.iter().map(|c| c.chance)).collect();
     // Units counted without gaps over those who have a chance.
     let mut unit = Vec::with_capacity(chances.len());
     let mut units = 0;
@@ -63,17 +66,17 @@ pub fn adjust(defenders: &[Defender<'_>]) -> Adjusted {
     }
     let df = chances.len() - units;
     let mut columns = geometry(&chances);
-    let kinds = play_kinds(&chances);
+    let kinds = play_kinds(season, &chances);
     if df >= ROWS_PER_TERM * (columns.len() + kinds.len()) {
         columns.extend(kinds);
     }
     if columns.is_empty() || df < ROWS_PER_TERM * columns.len() {
-        return plain;
+        return plain(raw);
     }
     let y: Vec<f64> = raw.iter().flatten().copied().collect();
     let (names, values): (Vec<String>, Vec<Vec<f64>>) = columns.into_iter().map(|c| (c.name, c.values)).unzip();
     let Some(within) = within_fit(&unit, &values, &y) else {
-        return plain;
+        return plain(raw);
     };
     let centre: Vec<f64> = values.iter().map(|c| c.iter().sum::<f64>() / c.len() as f64).collect();
     let terms = terms(names, &within);
@@ -111,14 +114,14 @@ fn terms(names: Vec<String>, within: &WithinFit) -> Vec<Term> {
         .collect()
 }
 
-fn geometry(chances: &[Chance<'_>]) -> Vec<Column> {
-    let bearing_rad = |c: &Chance<'_>| c.row.start_bearing_deg.to_radians();
+fn geometry(chances: &[&Chance]) -> Vec<Column> {
+    let bearing_rad = |c: &Chance| c.start_bearing_deg.get().map(f64::to_radians);
     [
-        column("start_range_yd", chances, |c| Some(c.row.start_range_yd)),
-        column("start_bearing_cos", chances, |c| Some(bearing_rad(c).cos())),
-        column("start_bearing_abs_sin", chances, |c| Some(bearing_rad(c).sin().abs())),
-        column("capability_ratio", chances, |c| c.row.capability_ratio),
-        column("carrier_speed_yps", chances, |c| Some(c.row.carrier_speed_yps)),
+        column("start_range_yd", chances, |c| c.start_range_yd.get()),
+        column("start_bearing_cos", chances, |c| bearing_rad(c).map(f64::cos)),
+        column("start_bearing_abs_sin", chances, |c| bearing_rad(c).map(|rad| rad.sin().abs())),
+        column("capability_ratio", chances, |c| c.capability_ratio.get()),
+        column("carrier_speed_yps", chances, |c| c.carrier_speed_yps.get()),
     ]
     .into_iter()
     .flatten()
@@ -126,7 +129,7 @@ fn geometry(chances: &[Chance<'_>]) -> Vec<Column> {
 }
 
 /// A column, a missing value standing at the mean of the known ones (which leaves its chance unmoved); none without variation.
-fn column(name: &str, chances: &[Chance<'_>], value: impl Fn(&Chance<'_>) -> Option<f64>) -> Option<Column> {
+fn column(name: &str, chances: &[&Chance], value: impl Fn(&Chance) -> Option<f64>) -> Option<Column> {
     let given: Vec<Option<f64>> = chances.iter().map(|c| value(c).filter(|v| v.is_finite())).collect();
     let mean = super::roster::mean(given.iter().copied())?;
     let varies = given.iter().flatten().any(|v| (v - mean).abs() > 1e-9 * (1.0 + mean.abs()));
@@ -134,27 +137,29 @@ fn column(name: &str, chances: &[Chance<'_>], value: impl Fn(&Chance<'_>) -> Opt
 }
 
 /// One 0/1 column for each kind of play but the most frequent; rare and unnamed kinds share one, or go with the most frequent.
-fn play_kinds(chances: &[Chance<'_>]) -> Vec<Column> {
-    let mut count: BTreeMap<&str, usize> = BTreeMap::new();
-    for kind in chances.iter().filter_map(|c| c.row.play_kind.as_deref()) {
+fn play_kinds(season: &Season, chances: &[&Chance]) -> Vec<Column> {
+    let mut count: BTreeMap<Code, usize> = BTreeMap::new();
+    for kind in chances.iter().filter_map(|c| c.play_kind) {
         *count.entry(kind).or_default() += 1;
     }
     count.retain(|_, n| *n >= LEAST_OF_A_KIND);
+    // In order of text: codes have none.
+    let kinds: BTreeMap<&str, (Code, usize)> = count.iter().map(|(kind, n)| (season.text(*kind), (*kind, *n))).collect();
     let Some(most) = count.values().copied().max() else {
         return Vec::new();
     };
-    let Some(usual) = count.iter().find(|(_, n)| **n == most).map(|(kind, _)| *kind) else {
+    let Some(usual) = kinds.values().find(|(_, n)| *n == most).map(|(kind, _)| *kind) else {
         return Vec::new();
     };
-    let mut columns: Vec<Column> = Vec::new();
-    for kind in count.keys().filter(|k| **k != usual) {
-        let values = chances.iter().map(|c| f64::from(u8::from(c.row.play_kind.as_deref() == Some(*kind)))).collect();
-        columns.push(Column { name: format!("play_kind={kind}"), values });
-    }
-    let is_rare = |c: &Chance<'_>| c.row.play_kind.as_deref().is_none_or(|k| !count.contains_key(k));
+    let share_of = |is_one: &dyn Fn(&Chance) -> bool| chances.iter().map(|c| f64::from(u8::from(is_one(c)))).collect::<Vec<f64>>();
+    let mut columns: Vec<Column> = kinds
+        .iter()
+        .filter(|(_, (kind, _))| *kind != usual)
+        .map(|(text, (kind, _))| Column { name: format!("play_kind={text}"), values: share_of(&|c| c.play_kind == Some(*kind)) })
+        .collect();
+    let is_rare = |c: &Chance| c.play_kind.is_none_or(|kind| !count.contains_key(&kind));
     if chances.iter().filter(|c| is_rare(c)).count() >= LEAST_OF_A_KIND {
-        columns
-            .push(Column { name: "play_kind=other".to_owned(), values: chances.iter().map(|c| f64::from(u8::from(is_rare(c)))).collect() });
+        columns.push(Column { name: "play_kind=other".to_owned(), values: share_of(&is_rare) });
     }
     columns
 }

@@ -1,7 +1,7 @@
 //! The steering law of a player, pooled over his pursuits, and its word where the intervals allow one.
 
 use super::measure::{Measured, PooledValue, pool_players, raw_means};
-use super::roster::{Defender, grouped};
+use super::roster::{ByGame, Defender};
 use crate::base::normal;
 
 /// Least difference that a fitted gain can show; own choice.
@@ -17,15 +17,15 @@ pub struct Steering {
     pub word: Option<&'static str>,
 }
 
-/// Steering laws in the order of the defenders.
-pub fn steering(defenders: &[Defender<'_>], level: f64) -> Vec<Steering> {
-    let gather = |value: fn(&crate::store::rows::PursuitRow) -> Option<f64>| -> Vec<Option<Measured>> {
-        let values: Vec<Vec<Vec<f64>>> = defenders.iter().map(|d| grouped(d.rows.iter().map(|r| (r.game.as_str(), value(r))))).collect();
+/// Steering laws in the order of the defenders, whose fitted gains are taken out of them.
+pub fn steering(defenders: &mut [Defender<'_>], level: f64) -> Vec<Steering> {
+    let mut pooled = |gains: for<'b> fn(&'b mut Defender<'_>) -> &'b mut ByGame| -> Vec<Option<Measured>> {
+        let values: Vec<Vec<Vec<f64>>> = defenders.iter_mut().map(|d| std::mem::take(gains(d)).values).collect();
         let mut players = raw_means(&values, RESOLUTION);
         pool_players(&mut players, level);
         players
     };
-    let (gain_n, gain_k) = (gather(|r| r.steer_n), gather(|r| r.steer_k_per_s));
+    let (gain_n, gain_k) = (pooled(|d| &mut d.steer_n), pooled(|d| &mut d.steer_k_per_s));
     let z = normal::quantile(0.5 + 0.5 * level);
     gain_n
         .iter()

@@ -1,20 +1,23 @@
 //! Each side's defence: means per chance with an interval clustered by game.
 
-use super::chance::{Account, own_yd};
+use super::chance::Account;
+use super::packed::{RunningMean, Tally};
 use super::ranking::RESOLUTION_YD;
-use super::roster::{grouped, in_order, mean};
+use super::roster::{Placed, grouped, mean};
+use super::season::Season;
+use super::texts::Code;
 use crate::base::normal;
 use crate::model::settings::RatingSettings;
 use crate::stats::cluster::{PRIOR_DF, cluster_variance};
-use crate::store::rows::{PursuitRow, TeamRow};
+use crate::store::rows::TeamRow;
 use std::collections::{BTreeMap, BTreeSet};
 
 /// Sides in order of own yards per chance, the smallest first; then sides without a chance, in order of text.
 ///
 /// A side is a sum of many players, so it is not pooled towards the others; its interval says how far the mean can be trusted.
 /// Rows without a side belong to nobody and are left out (see [`super::compare_sides`] for their number).
-pub fn rank_teams(rows: &[PursuitRow], settings: &RatingSettings) -> Vec<TeamRow> {
-    let mut teams: Vec<TeamRow> = by_side(rows).into_iter().map(|(side, rows)| team(side, &rows, settings)).collect();
+pub fn rank_teams(season: &Season, settings: &RatingSettings) -> Vec<TeamRow> {
+    let mut teams: Vec<TeamRow> = by_side(season).into_iter().map(|(name, side)| team(name, &side, settings)).collect();
     teams.sort_by(|a, b| match (a.own_yd, b.own_yd) {
         (Some(x), Some(y)) => x.total_cmp(&y).then_with(|| a.side.cmp(&b.side)),
         (Some(_), None) => std::cmp::Ordering::Less,
@@ -27,16 +30,35 @@ pub fn rank_teams(rows: &[PursuitRow], settings: &RatingSettings) -> Vec<TeamRow
     teams
 }
 
-/// Rows of each side, in a fixed order.
-pub(super) fn by_side(rows: &[PursuitRow]) -> BTreeMap<&str, Vec<&PursuitRow>> {
-    let mut sides: BTreeMap<&str, Vec<&PursuitRow>> = BTreeMap::new();
-    for row in rows {
-        if let Some(side) = &row.defender_side {
-            sides.entry(side).or_default().push(row);
+/// One side's chances in order of game, play, carry and pursuit; of all its pursuits the counts and the mean efficiency.
+#[derive(Default)]
+pub(super) struct Side<'a> {
+    pub chances: Vec<Placed<'a>>,
+    tally: Tally,
+    efficiency: RunningMean,
+}
+
+/// The sides in order of text.
+pub(super) fn by_side(season: &Season) -> BTreeMap<&str, Side<'_>> {
+    let mut sides: BTreeMap<Code, Side<'_>> = BTreeMap::new();
+    for (game, share) in season.games() {
+        for (label, tally) in &share.tallies {
+            if let Some(side) = label.side {
+                sides.entry(side).or_default().tally.add(tally);
+            }
+        }
+        for sample in &share.efficiencies {
+            if let Some(side) = sample.side {
+                sides.entry(side).or_default().efficiency.add(sample.value);
+            }
+        }
+        for chance in &share.chances {
+            if let Some(side) = chance.side {
+                sides.entry(side).or_default().chances.push(Placed { game, chance });
+            }
         }
     }
-    sides.values_mut().for_each(|rows| rows.sort_by(|a, b| in_order(a, b)));
-    sides
+    sides.into_iter().map(|(code, side)| (season.text(code), side)).collect()
 }
 
 /// Mean own yards per chance with its interval.
@@ -51,10 +73,9 @@ pub(super) struct OwnYards {
 /// Clusters by game where there are games, by play where there is one: the pursuits of one play share one run. The
 /// game-clustered variance has games − 1 degrees of freedom, so it is mixed with the play-clustered one, which counts for ten.
 /// No interval from a single play.
-pub(super) fn own_yards(rows: &[&PursuitRow], settings: &RatingSettings) -> OwnYards {
-    let plays: Vec<String> = rows.iter().map(|r| format!("{}\u{1f}{}", r.game, r.play)).collect();
-    let by_play = grouped(plays.iter().zip(rows).map(|(play, r)| (play.as_str(), own_yd(r))));
-    let by_game = grouped(rows.iter().map(|r| (r.game.as_str(), own_yd(r))));
+pub(super) fn own_yards(placed: &[Placed<'_>], settings: &RatingSettings) -> OwnYards {
+    let by_play = grouped(placed.iter().map(|p| ((p.game, p.chance.play), p.chance.account.own_yd())));
+    let by_game = grouped(placed.iter().map(|p| (p.game, p.chance.account.own_yd())));
     let chances: usize = by_game.iter().map(Vec::len).sum();
     let mean_yd = mean(by_game.iter().flatten().map(|v| Some(*v)));
     let df = by_game.len().saturating_sub(1) as f64;
@@ -67,20 +88,18 @@ pub(super) fn own_yards(rows: &[&PursuitRow], settings: &RatingSettings) -> OwnY
     OwnYards { chances, mean_yd, low_yd: shifted(-1.0), high_yd: shifted(1.0) }
 }
 
-fn team(side: &str, rows: &[&PursuitRow], settings: &RatingSettings) -> TeamRow {
-    let own = own_yards(rows, settings);
-    let accounts: Vec<Account> = rows.iter().filter_map(|r| Account::of(r)).collect();
-    let per_chance = |value: fn(&Account) -> f64| mean(accounts.iter().map(|a| Some(value(a))));
-    let players: BTreeSet<&str> = rows.iter().filter(|r| own_yd(r).is_some()).map(|r| r.defender.as_str()).collect();
-    let count = |ending: &str| rows.iter().filter(|r| r.ending == ending).count() as i64;
+fn team(name: &str, side: &Side<'_>, settings: &RatingSettings) -> TeamRow {
+    let own = own_yards(&side.chances, settings);
+    let per_chance = |value: fn(&Account) -> f64| mean(side.chances.iter().map(|p| Some(value(&p.chance.account))));
+    let players: BTreeSet<Code> = side.chances.iter().map(|p| p.chance.defender).collect();
     TeamRow {
         rank: 0,
-        side: side.to_owned(),
+        side: name.to_owned(),
         players: players.len() as i64,
         chances: own.chances as i64,
-        stops: count("stop"),
-        chances_lost: count("chance_lost"),
-        efficiency: mean(rows.iter().map(|r| r.efficiency)),
+        stops: i64::from(side.tally.stops),
+        chances_lost: i64::from(side.tally.chances_lost),
+        efficiency: side.efficiency.value(),
         own_yd: own.mean_yd,
         own_low_yd: own.low_yd,
         own_high_yd: own.high_yd,

@@ -4,7 +4,7 @@ use super::account::account;
 use super::heading::{Entries, Heading};
 use super::text::{ending_words, fixed, name_or_id, shown};
 use crate::model::Ending;
-use crate::store::rows::PursuitRow;
+use crate::store::rows::{BriefRow, PursuitRow};
 use std::cmp::Ordering;
 
 /// Film before the pursuit starts, and after it ends, so that the eye finds the players: own choice.
@@ -73,25 +73,83 @@ pub struct ClipRow {
     pub yards: Option<f64>,
 }
 
-/// The clips that the filter wants. A clip starts [`LEAD_S`] before the pursuit, not before second 0, and ends
-/// [`TAIL_S`] after it. Ties and equal yards are ordered by game, play, carry and pursuit.
+/// The clips that the filter wants, of rows that are at hand; see [`ClipPicker`].
 pub fn clips(rows: &[PursuitRow], want: &ClipFilter) -> Vec<ClipRow> {
-    let mut picked: Vec<(&PursuitRow, Option<f64>)> =
-        rows.iter().filter(|r| wanted(r, want)).map(|r| (r, yards(r, want))).filter(|(_, y)| enough(*y, want)).collect();
-    picked.sort_by(|(a, ya), (b, yb)| {
-        let by_yards = match want.order {
-            ClipOrder::CostliestFirst => yb.unwrap_or(f64::NEG_INFINITY).total_cmp(&ya.unwrap_or(f64::NEG_INFINITY)),
-            ClipOrder::BestFirst => ya.unwrap_or(f64::INFINITY).total_cmp(&yb.unwrap_or(f64::INFINITY)),
-            ClipOrder::FilmOrder => Ordering::Equal,
-        };
-        by_yards.then_with(|| by_place(a, b))
-    });
-    picked.into_iter().take(want.limit.unwrap_or(usize::MAX)).map(|(r, y)| clip(r, y)).collect()
+    let mut picker = ClipPicker::new(want);
+    picker.see(&rows.iter().map(BriefRow::from).collect::<Vec<_>>());
+    picker.clips()
+}
+
+/// Picks the clips that a filter wants from pursuits that go by, game by game. Where the filter has a limit, hardly more
+/// than twice as many clips are held.
+///
+/// A clip starts [`LEAD_S`] before the pursuit, not before second 0, and ends [`TAIL_S`] after it. Ties and equal yards are
+/// ordered by game, play, carry and pursuit.
+#[derive(Clone, Debug)]
+pub struct ClipPicker<'a> {
+    want: &'a ClipFilter,
+    picked: Vec<Picked>,
+}
+
+/// A clip and what it is ordered by.
+#[derive(Clone, Debug)]
+struct Picked {
+    /// Before the rounding.
+    yards: Option<f64>,
+    carry: i64,
+    pursuit: i64,
+    clip: ClipRow,
+}
+
+impl<'a> ClipPicker<'a> {
+    pub fn new(want: &'a ClipFilter) -> ClipPicker<'a> {
+        ClipPicker { want, picked: Vec::new() }
+    }
+
+    /// Takes what the filter wants of these pursuits.
+    pub fn see(&mut self, rows: &[BriefRow]) {
+        let chosen = rows.iter().filter(|r| wanted(r, self.want)).map(|r| (r, yards(r, self.want))).filter(|(_, y)| enough(*y, self.want));
+        self.picked.extend(chosen.map(|(r, yards)| Picked { yards, carry: r.carry, pursuit: r.pursuit, clip: clip(r, yards) }));
+        self.cut_where_many();
+    }
+
+    /// Takes what another picker of the same filter has picked.
+    pub fn merge(&mut self, mut more: ClipPicker<'_>) {
+        self.picked.append(&mut more.picked);
+        self.cut_where_many();
+    }
+
+    /// The clips in order.
+    pub fn clips(mut self) -> Vec<ClipRow> {
+        self.cut();
+        self.picked.into_iter().map(|picked| picked.clip).collect()
+    }
+
+    fn cut_where_many(&mut self) {
+        if self.want.limit.is_some_and(|limit| self.picked.len() > limit.saturating_mul(2)) {
+            self.cut();
+        }
+    }
+
+    fn cut(&mut self) {
+        self.picked.sort_by(|a, b| {
+            let by_yards = match self.want.order {
+                ClipOrder::CostliestFirst => b.yards.unwrap_or(f64::NEG_INFINITY).total_cmp(&a.yards.unwrap_or(f64::NEG_INFINITY)),
+                ClipOrder::BestFirst => a.yards.unwrap_or(f64::INFINITY).total_cmp(&b.yards.unwrap_or(f64::INFINITY)),
+                ClipOrder::FilmOrder => Ordering::Equal,
+            };
+            by_yards.then_with(|| by_place(a, b))
+        });
+        self.picked.truncate(self.want.limit.unwrap_or(usize::MAX));
+    }
 }
 
 /// Game and play in the order of their numbers where ids are numbers (9 before 10), else of their text.
-fn by_place(a: &PursuitRow, b: &PursuitRow) -> Ordering {
-    by_id(&a.game, &b.game).then_with(|| by_id(&a.play, &b.play)).then(a.carry.cmp(&b.carry)).then(a.pursuit.cmp(&b.pursuit))
+fn by_place(a: &Picked, b: &Picked) -> Ordering {
+    by_id(&a.clip.game, &b.clip.game)
+        .then_with(|| by_id(&a.clip.play, &b.clip.play))
+        .then(a.carry.cmp(&b.carry))
+        .then(a.pursuit.cmp(&b.pursuit))
 }
 
 fn by_id(a: &str, b: &str) -> Ordering {
@@ -99,7 +157,7 @@ fn by_id(a: &str, b: &str) -> Ordering {
     number(a).total_cmp(&number(b)).then_with(|| a.cmp(b))
 }
 
-fn wanted(row: &PursuitRow, want: &ClipFilter) -> bool {
+fn wanted(row: &BriefRow, want: &ClipFilter) -> bool {
     let same = |a: &str, b: &str| a.trim().to_lowercase() == b.trim().to_lowercase();
     let player = want.player.as_ref().is_none_or(|p| row.defender == *p || row.defender_name.as_ref().is_some_and(|name| same(name, p)));
     let side = want.side.as_ref().is_none_or(|s| row.defender_side.as_ref().is_some_and(|side| same(side, s)));
@@ -109,7 +167,7 @@ fn wanted(row: &PursuitRow, want: &ClipFilter) -> bool {
     player && side && game && ending && (row.charged || uncharged_wanted)
 }
 
-fn yards(row: &PursuitRow, want: &ClipFilter) -> Option<f64> {
+fn yards(row: &BriefRow, want: &ClipFilter) -> Option<f64> {
     match want.heading {
         Some(h) => row.entry_yd(h),
         None => row.own_entries_yd(),
@@ -122,7 +180,7 @@ fn enough(yards: Option<f64>, want: &ClipFilter) -> bool {
     least.is_none_or(|least| yards.is_some_and(|y| y >= least))
 }
 
-fn clip(row: &PursuitRow, yards: Option<f64>) -> ClipRow {
+fn clip(row: &BriefRow, yards: Option<f64>) -> ClipRow {
     let film = row.film_s.filter(|s| s.is_finite());
     let start_s = film.unwrap_or(row.start_s);
     let end_s = start_s + (row.end_s - row.start_s);
@@ -144,7 +202,7 @@ fn milliseconds(value: f64) -> f64 {
 }
 
 /// `chance lost at 2.1 s: flat line 9.0 yd, late break 3.1 yd`: the ending, then what cost half a yard or more.
-fn why(row: &PursuitRow) -> String {
+fn why(row: &BriefRow) -> String {
     let account = account(row, row.conceded_yd);
     let mut parts: Vec<(i64, String)> = account
         .lines

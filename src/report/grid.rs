@@ -1,8 +1,11 @@
 //! A plain grid of cells and its three ways out: terminal table, CSV, JSON.
 
 use super::text::shown;
-use crate::store::column::Column;
+use crate::store::csv::{csv_text as text_of, table_cells, table_header};
 use crate::store::rows::Row;
+
+/// One cell: the same as in the tables on disk, so that a text is made safe for spreadsheets in one place.
+pub use crate::store::csv::CsvCell as Cell;
 
 /// How a table is written.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -15,16 +18,6 @@ pub enum Format {
     Json,
 }
 
-/// One cell.
-#[derive(Clone, Debug, PartialEq)]
-pub enum Cell {
-    Text(String),
-    Number(f64),
-    Whole(i64),
-    Truth(bool),
-    Missing,
-}
-
 /// Names of the columns, and the rows.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Grid {
@@ -34,60 +27,12 @@ pub struct Grid {
 
 /// All columns of a table's rows.
 pub fn grid_of<R: Row>(rows: &[R]) -> Grid {
-    let columns = R::to_columns(rows);
-    let cells = (0..rows.len()).map(|i| columns.iter().map(|c| cell(c, i)).collect()).collect();
-    Grid { names: R::COLUMNS.iter().map(|c| c.name).collect(), rows: cells }
-}
-
-fn cell(column: &Column, row: usize) -> Cell {
-    match column {
-        Column::Text(v) => v.get(row).cloned().flatten().map_or(Cell::Missing, Cell::Text),
-        Column::Number(v) => v.get(row).copied().flatten().filter(|n| n.is_finite()).map_or(Cell::Missing, Cell::Number),
-        Column::Whole(v) => v.get(row).copied().flatten().map_or(Cell::Missing, Cell::Whole),
-        Column::Truth(v) => v.get(row).copied().flatten().map_or(Cell::Missing, Cell::Truth),
-    }
-}
-
-/// A text that no spreadsheet takes for a formula: where it begins with `=`, `+`, `-`, `@` (or their full-width
-/// twins) after any leading blanks, or with a tab, return or line feed, an apostrophe is set before it.
-///
-/// Only for text cells; numbers are written bare and stay numbers.
-///
-/// ```
-/// use tailchase::report::csv_safe;
-/// assert_eq!(csv_safe("=1+1"), "'=1+1");
-/// assert_eq!(csv_safe("O'Hara"), "O'Hara");
-/// ```
-pub fn csv_safe(text: &str) -> String {
-    let starts_bare = text.starts_with(['\t', '\r', '\n']);
-    let starts_formula = text.trim_start().starts_with(['=', '+', '-', '@', '＝', '＋', '－', '＠']);
-    if starts_bare || starts_formula { format!("'{text}") } else { text.to_string() }
+    Grid { names: table_header::<R>(), rows: table_cells(rows) }
 }
 
 /// Comma separated, one header line, `\n` line ends, quotes where a cell needs them.
 pub fn csv_text(grid: &Grid) -> String {
-    let mut out = grid.names.join(",");
-    out.push('\n');
-    for row in &grid.rows {
-        let cells: Vec<String> = row.iter().map(csv_cell).collect();
-        out += &cells.join(",");
-        out.push('\n');
-    }
-    out
-}
-
-fn csv_cell(cell: &Cell) -> String {
-    match cell {
-        Cell::Text(t) => quoted(&csv_safe(t)),
-        Cell::Number(n) => n.to_string(),
-        Cell::Whole(n) => n.to_string(),
-        Cell::Truth(b) => b.to_string(),
-        Cell::Missing => String::new(),
-    }
-}
-
-fn quoted(text: &str) -> String {
-    if text.contains([',', '"', '\n', '\r']) { format!("\"{}\"", text.replace('"', "\"\"")) } else { text.to_string() }
+    text_of(&grid.names, &grid.rows)
 }
 
 /// An array of objects, one row a line, keys in the order of the columns.

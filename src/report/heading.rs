@@ -1,6 +1,6 @@
 //! The six headings of the account: key, words, what each says, whose it is.
 
-use crate::store::rows::{FrameRow, PlayerRow, PursuitRow, TeamRow};
+use crate::store::rows::{BriefRow, FrameRow, PlayerRow, PursuitRow, TeamRow};
 
 /// One heading of the account.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -108,4 +108,4 @@ macro_rules! entries {
         }
     )*};
 }
-entries!(PursuitRow, FrameRow, PlayerRow, TeamRow);
+entries!(PursuitRow, BriefRow, FrameRow, PlayerRow, TeamRow);

@@ -38,12 +38,13 @@ pub mod view_players;
 pub mod view_pursuit;
 pub mod view_run;
 
-pub use clips::{ClipFilter, ClipOrder, ClipRow, clips};
-pub use grid::{Format, csv_safe};
+pub use crate::store::csv::guarded as csv_safe;
+pub use clips::{ClipFilter, ClipOrder, ClipPicker, ClipRow, clips};
+pub use grid::Format;
 pub use heading::Heading;
 pub use page::{DrawnPursuit, page};
 pub use provenance::{FindingLine, InputFile, Provenance};
 pub use ranking_chart::ranking_chart;
 pub use sentence::sentence;
 pub use sheet::sheet;
-pub use tables::{clips_table, players_table, teams_table};
+pub use tables::{clips_csv_header, clips_csv_lines, clips_table, players_table, teams_table};

@@ -5,6 +5,7 @@ use super::grid::{Align, Cell, Format, Grid, aligned, csv_text, grid_of, json_te
 use super::heading::{Entries, Heading};
 use super::rounding::round_together;
 use super::text::{MISSING, fixed, name_or_id, number, optional};
+use crate::store::csv::{csv_header, csv_lines};
 use crate::store::rows::{PlayerRow, TeamRow};
 use Align::{Left, Right};
 
@@ -119,14 +120,24 @@ pub fn teams_table(teams: &[TeamRow], format: Format) -> String {
     }
 }
 
+/// Columns of the clip list.
+const CLIP_NAMES: [&str; 8] = ["game", "play", "from_s", "to_s", "clock", "who", "why", "yards"];
+
+/// Header of the clip list as CSV; with [`clips_csv_lines`] for a list that is written piece by piece.
+pub fn clips_csv_header() -> String {
+    csv_header(&CLIP_NAMES)
+}
+
+/// Clips as CSV lines without the header.
+pub fn clips_csv_lines(clips: &[ClipRow]) -> String {
+    csv_lines(&clips.iter().map(clip_cells).collect::<Vec<_>>())
+}
+
 /// The clip list; its CSV is what a film cutter reads.
 pub fn clips_table(clips: &[ClipRow], format: Format) -> String {
-    let grid = || Grid {
-        names: vec!["game", "play", "from_s", "to_s", "clock", "who", "why", "yards"],
-        rows: clips.iter().map(clip_cells).collect(),
-    };
+    let grid = || Grid { names: CLIP_NAMES.to_vec(), rows: clips.iter().map(clip_cells).collect() };
     match format {
-        Format::Csv => csv_text(&grid()),
+        Format::Csv => clips_csv_header() + &clips_csv_lines(clips),
         Format::Json => json_text(&grid()),
         Format::Table => {
             let heads = [

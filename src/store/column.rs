@@ -38,8 +38,8 @@ pub trait Cell: Sized {
     fn collect<'a>(values: impl Iterator<Item = &'a Self>) -> Column
     where
         Self: 'a;
-    /// `None` when the value is missing or of another kind.
-    fn get(column: &Column, row: usize) -> Option<Self>;
+    /// Hands over the values with the numbers of their rows; nothing for a missing one that must be there, or of another kind.
+    fn each(column: Column, put: impl FnMut(usize, Self));
 }
 
 macro_rules! cell {
@@ -50,10 +50,9 @@ macro_rules! cell {
             fn collect<'a>(values: impl Iterator<Item = &'a Self>) -> Column {
                 Column::$kind(values.map(|v| Some(v.clone())).collect())
             }
-            fn get(column: &Column, row: usize) -> Option<Self> {
-                match column {
-                    Column::$kind(v) => v.get(row).cloned().flatten(),
-                    _ => None,
+            fn each(column: Column, mut put: impl FnMut(usize, Self)) {
+                if let Column::$kind(values) = column {
+                    values.into_iter().enumerate().for_each(|(row, value)| value.into_iter().for_each(|value| put(row, value)));
                 }
             }
         }
@@ -63,10 +62,9 @@ macro_rules! cell {
             fn collect<'a>(values: impl Iterator<Item = &'a Self>) -> Column {
                 Column::$kind(values.cloned().collect())
             }
-            fn get(column: &Column, row: usize) -> Option<Self> {
-                match column {
-                    Column::$kind(v) => v.get(row).cloned(),
-                    _ => None,
+            fn each(column: Column, mut put: impl FnMut(usize, Self)) {
+                if let Column::$kind(values) = column {
+                    values.into_iter().enumerate().for_each(|(row, value)| put(row, value));
                 }
             }
         }

@@ -30,11 +30,22 @@ pub fn guarded(text: &str) -> Cow<'_, str> {
 
 /// CSV text: header, then rows, lines ended by `\n`; a missing value is an empty field, a number has all its digits.
 pub fn csv_text(header: &[&str], rows: &[Vec<CsvCell>]) -> String {
+    let mut text = csv_header(header);
+    rows.iter().for_each(|row| push_line(&mut text, row.iter().map(written)));
+    text
+}
+
+/// The header line alone.
+pub fn csv_header(header: &[&str]) -> String {
     let mut text = String::new();
-    push_line(&mut text, header.iter().map(|name| guarded(name).into_owned()));
-    for row in rows {
-        push_line(&mut text, row.iter().map(written));
-    }
+    push_line(&mut text, header.iter().map(|name| guarded(name)));
+    text
+}
+
+/// Rows without a header, for a file that is written piece by piece.
+pub fn csv_lines(rows: &[Vec<CsvCell>]) -> String {
+    let mut text = String::new();
+    rows.iter().for_each(|row| push_line(&mut text, row.iter().map(written)));
     text
 }
 
@@ -48,33 +59,41 @@ pub fn write_csv(path: &Path, header: &[&str], rows: &[Vec<CsvCell>]) -> Result<
 
 /// A whole table as CSV, columns as in its schema.
 pub fn table_csv<R: Row>(rows: &[R]) -> String {
-    let header: Vec<&str> = R::COLUMNS.iter().map(|doc| doc.name).collect();
+    csv_text(&table_header::<R>(), &table_cells(rows))
+}
+
+/// Names of a table's columns.
+pub fn table_header<R: Row>() -> Vec<&'static str> {
+    R::COLUMNS.iter().map(|doc| doc.name).collect()
+}
+
+/// A table's rows as cells, in the order of its columns; a number that is not finite is missing.
+pub fn table_cells<R: Row>(rows: &[R]) -> Vec<Vec<CsvCell>> {
     let columns = R::to_columns(rows);
-    let lines: Vec<Vec<CsvCell>> = (0..rows.len()).map(|i| columns.iter().map(|column| cell(column, i)).collect()).collect();
-    csv_text(&header, &lines)
+    (0..rows.len()).map(|i| columns.iter().map(|column| cell(column, i)).collect()).collect()
 }
 
 fn cell(column: &Column, row: usize) -> CsvCell {
     let found = match column {
         Column::Text(v) => v.get(row).cloned().flatten().map(CsvCell::Text),
-        Column::Number(v) => v.get(row).copied().flatten().map(CsvCell::Number),
+        Column::Number(v) => v.get(row).copied().flatten().filter(|n| n.is_finite()).map(CsvCell::Number),
         Column::Whole(v) => v.get(row).copied().flatten().map(CsvCell::Whole),
         Column::Truth(v) => v.get(row).copied().flatten().map(CsvCell::Truth),
     };
     found.unwrap_or(CsvCell::Missing)
 }
 
-fn written(cell: &CsvCell) -> String {
+fn written(cell: &CsvCell) -> Cow<'_, str> {
     match cell {
-        CsvCell::Text(text) => guarded(text).into_owned(),
-        CsvCell::Number(value) if value.is_finite() => value.to_string(),
-        CsvCell::Number(_) | CsvCell::Missing => String::new(),
-        CsvCell::Whole(value) => value.to_string(),
-        CsvCell::Truth(value) => value.to_string(),
+        CsvCell::Text(text) => guarded(text),
+        CsvCell::Number(value) if value.is_finite() => Cow::Owned(value.to_string()),
+        CsvCell::Number(_) | CsvCell::Missing => Cow::Borrowed(""),
+        CsvCell::Whole(value) => Cow::Owned(value.to_string()),
+        CsvCell::Truth(value) => Cow::Owned(value.to_string()),
     }
 }
 
-fn push_line(text: &mut String, fields: impl Iterator<Item = String>) {
+fn push_line<'a>(text: &mut String, fields: impl Iterator<Item = Cow<'a, str>>) {
     for (i, field) in fields.enumerate() {
         if i > 0 {
             text.push(',');

@@ -28,6 +28,6 @@ pub use folders::{PART_FILE, decode_id, encode_id, folder_name, game_files, game
 pub use game::{GAME_TABLES, GameTables, prune_games, write_game};
 pub use mark::{DONE, GameMark, NoiseEntry, fingerprint, mark_path, read_marks, write_mark};
 pub use out::{OutDir, prepare_out};
-pub use parquet::{each_game, read_all, read_table, write_table};
-pub use rows::{CarryRow, ColumnDoc, FrameRow, PlayerRow, PursuitRow, Row, SetAsideRow, TeamRow};
+pub use parquet::{each_game, read_all, read_row, read_table, write_table};
+pub use rows::{BriefRow, CarryRow, ColumnDoc, FrameRow, PlayerRow, PursuitRow, Row, SetAsideRow, TeamRow};
 pub use whole::{PART_SUFFIX, Staged, write_text};

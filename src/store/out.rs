@@ -13,7 +13,7 @@ use std::path::{Path, PathBuf};
 /// Held by a running audit; also what tells an interrupted first run from a folder of other things.
 const HOLD_FILE: &str = ".tailchase";
 /// Files that an audit writes at the top of its folder and under `report/`.
-const TOP_FILES: [&str; 9] = [
+const TOP_FILES: [&str; 10] = [
     AUDIT_FILE,
     "set_aside.csv",
     "findings.csv",
@@ -23,6 +23,7 @@ const TOP_FILES: [&str; 9] = [
     "teams.parquet",
     "clips.csv",
     "report/index.html",
+    "charts/ranking.svg",
 ];
 
 /// An output folder that this run holds until it is dropped.

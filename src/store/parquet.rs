@@ -67,17 +67,30 @@ fn to_series(path: &Path, name: &'static str, optional: bool, column: Column) ->
 /// # Errors
 /// When the file is not Parquet, a column is of another kind, or a column or value that must be there is not.
 pub fn read_table<R: Row>(path: &Path) -> Result<Vec<R>, StoreError> {
+    read_part(path, None)
+}
+
+/// Like [`read_table`], but of one row alone, counted from 0; none when the table is shorter.
+///
+/// # Errors
+/// As [`read_table`].
+pub fn read_row<R: Row>(path: &Path, row: usize) -> Result<Option<R>, StoreError> {
+    Ok(read_part(path, Some(row))?.pop())
+}
+
+fn read_part<R: Row>(path: &Path, row: Option<usize>) -> Result<Vec<R>, StoreError> {
     // The Parquet reader panics on some damaged files; that too is the file's fault and no reason to die.
-    catch_unwind(|| read_sound_table(path))
+    catch_unwind(|| read_sound_table(path, row))
         .unwrap_or_else(|_| Err(StoreError::Parquet { path: path.to_path_buf(), source: "its contents contradict themselves".into() }))
 }
 
-fn read_sound_table<R: Row>(path: &Path) -> Result<Vec<R>, StoreError> {
+fn read_sound_table<R: Row>(path: &Path, row: Option<usize>) -> Result<Vec<R>, StoreError> {
     let broken = |source: pl::PolarsError| StoreError::Parquet { path: path.to_path_buf(), source: Box::new(source) };
     let file = File::open(path).map_err(StoreError::io(path, "open the file"))?;
     let mut reader = pl::ParquetReader::new(file).read_parallel(pl::ParallelStrategy::None).set_rechunk(true);
     let schema = reader.schema().map_err(broken)?;
-    let height = reader.num_rows().map_err(broken)?;
+    let rows = reader.num_rows().map_err(broken)?;
+    let (first, height) = row.map_or((0, rows), |row| (row.min(rows), rows.saturating_sub(row).min(1)));
 
     let mut present = Vec::new();
     for doc in R::COLUMNS {
@@ -93,7 +106,7 @@ fn read_sound_table<R: Row>(path: &Path) -> Result<Vec<R>, StoreError> {
         }
     }
 
-    let frame = reader.with_columns(Some(present)).finish().map_err(broken)?;
+    let frame = reader.with_columns(Some(present)).with_slice(row.map(|_| (first, height))).finish().map_err(broken)?;
     let mut columns = Vec::with_capacity(R::COLUMNS.len());
     for doc in R::COLUMNS {
         let Ok(found) = frame.column(doc.name) else {
@@ -103,11 +116,11 @@ fn read_sound_table<R: Row>(path: &Path) -> Result<Vec<R>, StoreError> {
         let column = from_series(doc.kind, found.as_materialized_series()).map_err(broken)?;
         if let Some(gap) = first_missing(&column).filter(|_| !doc.optional) {
             let (column, expected) = (doc.name.to_string(), doc.kind.word());
-            return Err(StoreError::MissingValue { path: path.to_path_buf(), row: gap + 1, column, expected });
+            return Err(StoreError::MissingValue { path: path.to_path_buf(), row: first + gap + 1, column, expected });
         }
         columns.push(Some(column));
     }
-    Ok(R::from_columns(&columns, height))
+    Ok(R::from_columns(columns, height))
 }
 
 /// The kinds in which other tools may give a column back.

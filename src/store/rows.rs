@@ -18,7 +18,7 @@ pub trait Row: Sized + Default {
     /// The rows as columns, in the order of [`Row::COLUMNS`].
     fn to_columns(rows: &[Self]) -> Vec<Column>;
     /// Rows from columns in the order of [`Row::COLUMNS`], all of one length; `None` for one that the table lacks.
-    fn from_columns(columns: &[Option<Column>], rows: usize) -> Vec<Self>;
+    fn from_columns(columns: Vec<Option<Column>>, rows: usize) -> Vec<Self>;
 }
 
 macro_rules! table {
@@ -37,13 +37,13 @@ macro_rules! table {
             fn to_columns(rows: &[Self]) -> Vec<Column> {
                 vec![$(<$ty as Cell>::collect(rows.iter().map(|r| &r.$name)),)*]
             }
-            fn from_columns(columns: &[Option<Column>], rows: usize) -> Vec<Self> {
+            fn from_columns(columns: Vec<Option<Column>>, rows: usize) -> Vec<Self> {
                 let mut out: Vec<Self> = (0..rows).map(|_| Self::default()).collect();
-                let mut at = columns.iter();
+                let mut at = columns.into_iter();
                 $(if let Some(Some(column)) = at.next() {
-                    for (i, row) in out.iter_mut().enumerate() {
-                        if let Some(v) = <$ty as Cell>::get(column, i) { row.$name = v; }
-                    }
+                    <$ty as Cell>::each(column, |row, value| {
+                        if let Some(row) = out.get_mut(row) { row.$name = value; }
+                    });
                 })*
                 out
             }
@@ -130,6 +130,61 @@ table! {
         steer_word: Option<String>, "runs at the man, mixed or leads; null where it cannot be told";
         charged: bool, "whether the account is charged to him: he had a chance and was not out of it";
         film_s: Option<f64>, "second of the film at which the pursuit starts, where a film table says";
+    }
+}
+
+/// A row type with some of another one's columns, so that reading it reads those alone; made from the whole row too.
+macro_rules! narrow {
+    ($(#[$doc:meta])* $row:ident of $whole:ident, $table:literal { $($name:ident : $ty:ty;)* }) => {
+        table! { $(#[$doc])* $row, $table { $($name: $ty, "as in the whole row";)* } }
+        impl From<&$whole> for $row {
+            fn from(whole: &$whole) -> $row {
+                $row { $($name: whole.$name.clone(),)* }
+            }
+        }
+    };
+}
+
+narrow! {
+    /// What rankings and clip lists read of a pursuit: under half of its columns.
+    BriefRow of PursuitRow, "pursuits" {
+        game: String;
+        play: String;
+        carry: i64;
+        pursuit: i64;
+        carrier: String;
+        carrier_name: Option<String>;
+        defender: String;
+        defender_name: Option<String>;
+        defender_side: Option<String>;
+        position: Option<String>;
+        play_kind: Option<String>;
+        start_frame: i64;
+        start_s: f64;
+        end_s: f64;
+        ending: String;
+        start_range_yd: f64;
+        start_bearing_deg: f64;
+        capability_ratio: Option<f64>;
+        carrier_speed_yps: f64;
+        closing_median_yps: f64;
+        line_rate_median_degps: f64;
+        on_course_share: f64;
+        lean_deg: Option<f64>;
+        top_speed_yps: f64;
+        chance_lost_s: Option<f64>;
+        efficiency: Option<f64>;
+        conceded_yd: Option<f64>;
+        late_yd: Option<f64>;
+        flat_yd: Option<f64>;
+        deep_yd: Option<f64>;
+        pace_yd: Option<f64>;
+        block_yd: Option<f64>;
+        move_yd: Option<f64>;
+        steer_n: Option<f64>;
+        steer_k_per_s: Option<f64>;
+        charged: bool;
+        film_s: Option<f64>;
     }
 }
 

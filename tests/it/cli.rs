@@ -4,7 +4,7 @@ use std::path::Path;
 use std::process::{Command, Output};
 use tailchase::cli::{RANGES, check_settings, settings_toml};
 use tailchase::model::Settings;
-use tailchase::store::{AuditInfo, GameMark, GameTables, PursuitRow, RunInfo, read_marks, write_audit_info, write_game};
+use tailchase::store::{AuditInfo, GameMark, GameTables, PursuitRow, RunInfo, game_folder, read_marks, write_audit_info, write_game};
 
 fn tailchase(arguments: &[&str]) -> Output {
     Command::new(env!("CARGO_BIN_EXE_tailchase")).args(arguments).output().unwrap()
@@ -188,4 +188,52 @@ fn clips_and_sheet_read_the_audit() {
     assert!(chosen.starts_with("Name 52 (CB, North)") && chosen.contains("game g 1, play 1, carry 1, pursuit 1"), "{chosen}");
     assert_fails(&["sheet", out, "--game", "g 1", "--play", "9"], "expected a pursuit of game g 1, play 9, found none (`tailchase clips ");
     assert_fails(&["sheet", out, "--game", "../g"], "found none");
+}
+
+#[test]
+fn what_a_figure_leaves_out_is_said() {
+    let dir = tempfile::tempdir().unwrap();
+    let out = dir.path().to_str().unwrap();
+    let mut pursuits = [pursuit("1", 1, "52", 2.0), pursuit("1", 2, "60", 7.5), pursuit("2", 1, "52", 1.0)];
+    (pursuits[0].flat_yd, pursuits[1].defender_side) = (None, None);
+    let mark = GameMark { game: "g 1".to_string(), pursuits: 3, ..GameMark::default() };
+    write_game(dir.path(), &mark, &GameTables { pursuits: &pursuits, ..GameTables::default() }).unwrap();
+    write_audit_info(dir.path(), &AuditInfo::sum_up(RunInfo::default(), &read_marks(dir.path()).unwrap(), None)).unwrap();
+    let (broken, sideless) = ("1 charged pursuits have no whole account", "1 pursuits of defenders without a side");
+    let said = |arguments: &[&str]| {
+        let text = String::from_utf8(tailchase(arguments).stderr).unwrap();
+        (text.contains(broken), text.contains(sideless))
+    };
+    assert_eq!(said(&["rank", out]), (true, false));
+    assert_eq!(said(&["scout", out]), (true, true));
+    assert_eq!(said(&["rank", out, "--side", "south"]), (false, false), "the broken one is on the other side");
+    assert_eq!(said(&["scout", out, "--quiet"]), (false, false));
+}
+
+#[test]
+fn one_game_is_read_alone_and_clips_come_from_all() {
+    let dir = tempfile::tempdir().unwrap();
+    let out = dir.path().to_str().unwrap();
+    for (game, own_yd) in [("10", 1.0), ("9", 5.0), ("a/b", 3.0)] {
+        let pursuits =
+            [pursuit("1", 1, "52", own_yd), pursuit("2", 1, "60", own_yd + 1.0)].map(|p| PursuitRow { game: game.to_string(), ..p });
+        let mark = GameMark { game: game.to_string(), pursuits: 2, ..GameMark::default() };
+        write_game(dir.path(), &mark, &GameTables { pursuits: &pursuits, ..GameTables::default() }).unwrap();
+    }
+    write_audit_info(dir.path(), &AuditInfo::sum_up(RunInfo::default(), &read_marks(dir.path()).unwrap(), None)).unwrap();
+    let games = |more: &[&str]| -> Vec<String> {
+        let text = stdout(&tailchase(&[&["clips", out, "--format", "csv"], more].concat()));
+        text.lines().skip(1).map(|line| line.split(',').take(2).collect::<Vec<_>>().join(" ")).collect()
+    };
+    assert_eq!(games(&[]), ["9 2", "9 1", "a/b 2", "a/b 1", "10 2", "10 1"], "costliest first");
+    assert_eq!(games(&["--top", "1"]), ["9 2"]);
+    assert_eq!(games(&["--order", "best", "--top", "2"]), ["10 1", "10 2"]);
+    assert_eq!(games(&["--order", "film"]), ["9 1", "9 2", "10 1", "10 2", "a/b 1", "a/b 2"]);
+    assert_eq!(games(&["--game", "a/b"]), ["a/b 2", "a/b 1"]);
+    assert_eq!(games(&["--game", "none"]), [""; 0]);
+    // A damaged table of another game is in nobody's way.
+    std::fs::write(game_folder(dir.path(), "pursuits", "10"), "no table").unwrap();
+    assert_eq!(games(&["--game", "9"]), ["9 2", "9 1"]);
+    assert!(stdout(&tailchase(&["sheet", out, "--game", "9"])).contains("game 9, play 2"));
+    assert_fails(&["clips", out], "part.parquet: not readable as Parquet");
 }

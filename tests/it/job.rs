@@ -164,3 +164,26 @@ fn another_dress_gives_the_same_table() {
     assert_eq!(printed(&plain_players), printed(&dressed_players));
     assert!(plain_players.iter().any(|p| p.chances > 0));
 }
+
+/// Ranking again under other settings says how far each rank moves; a run without it says nothing.
+#[test]
+fn sensitivity_says_how_far_a_rank_moves() {
+    let folder = tempfile::tempdir().expect("a folder");
+    let game = folder.path().join("game.csv");
+    let rows = rows(&generate_game(1, &DemoOptions { games: 2, plays_per_game: 25, ..DemoOptions::default() }));
+    fs::write(&game, csv_text(&rows).expect("text")).expect("written");
+    let out = folder.path().join("out");
+    let players = |more: &[&str]| -> Vec<PlayerRow> {
+        let mut arguments = vec![game.to_str().expect("a name"), "--out", out.to_str().expect("a name")];
+        arguments.extend(more);
+        let (code, _, words) = audit(&arguments);
+        assert!(matches!(code, Some(0 | 1)), "{words}");
+        read_table(&out.join("players.parquet")).expect("players")
+    };
+    let tried = players(&["--sensitivity"]);
+    assert!(tried.iter().all(|p| p.rank_swing.is_some()));
+    assert!(tried.iter().any(|p| p.rank_swing > Some(0)), "no setting moves anybody");
+    let plain = players(&[]);
+    assert!(plain.iter().all(|p| p.rank_swing.is_none()));
+    assert_eq!(plain.len(), tried.len());
+}

@@ -6,5 +6,7 @@ mod league;
 mod rows;
 #[path = "rating/rules.rs"]
 mod rules;
+#[path = "rating/season.rs"]
+mod season;
 #[path = "rating/truth.rs"]
 mod truth;

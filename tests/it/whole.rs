@@ -179,3 +179,45 @@ fn a_failed_run_leaves_the_earlier_audit_as_it_was() {
     assert_eq!(output.status.code(), Some(2), "{}", stderr(&output));
     assert_eq!(contents(&out), before);
 }
+
+#[test]
+fn an_edited_table_redoes_the_games_and_a_moved_one_does_not() {
+    let dir = tempfile::tempdir().unwrap();
+    let games = invent(dir.path(), "parquet");
+    let (files, out) = (trackings(&games), dir.path().join("out"));
+    for (flag, name) in [("--players", "players.csv"), ("--plays", "plays.csv")] {
+        let here = games.join(name);
+        let moved = dir.path().join(format!("moved_{name}"));
+        let run = |table: &Path| stderr(&audit(&files, &out, &[flag, table.to_str().unwrap()]));
+        let first = run(&here);
+        assert!(first.contains("games: 2 audited, 0 kept from before"), "{first}");
+        fs::copy(&here, &moved).unwrap();
+        let again = run(&moved);
+        assert!(again.contains("games: 0 audited, 2 kept from before"), "{again}");
+        let text = fs::read_to_string(&moved).unwrap();
+        fs::write(&moved, text.trim_end()).unwrap();
+        let edited = run(&moved);
+        assert!(edited.contains("games: 2 audited, 0 kept from before"), "{edited}");
+    }
+}
+
+#[test]
+fn the_clip_list_holds_each_game_costliest_first() {
+    let dir = tempfile::tempdir().unwrap();
+    let files = trackings(&invent(dir.path(), "csv"));
+    let out = dir.path().join("out");
+    assert_done(&audit(&files, &out, &[]));
+    let list = fs::read_to_string(out.join("clips.csv")).unwrap();
+    let mut rows: Vec<(String, f64)> = Vec::new();
+    for record in csv::Reader::from_reader(list.as_bytes()).records() {
+        let record = record.unwrap();
+        rows.push((record[0].to_owned(), record[7].parse().unwrap()));
+    }
+    let command = tailchase(&[Path::new("clips"), &out, Path::new("--format"), Path::new("csv")]);
+    let command = String::from_utf8(command.stdout).unwrap();
+    let sorted = |text: &str| text.lines().map(str::to_owned).collect::<std::collections::BTreeSet<_>>();
+    assert_eq!(sorted(&list), sorted(&command), "the same clips as the command lists");
+    assert!(rows.len() > 20);
+    assert!(rows.windows(2).all(|w| w[0].0 < w[1].0 || (w[0].0 == w[1].0 && w[0].1 >= w[1].1)));
+    assert_ne!(rows[0].0, rows[rows.len() - 1].0);
+}

@@ -14,7 +14,7 @@ pub(super) fn uneven(rows: &mut [DemoRow], draws: &mut Stream) -> usize {
             offsets.entry((row.play_id.clone(), 1)).or_insert(0.0);
         }
         let step_s = if row.frame > 1 { row.time_s / (row.frame - 1) as f64 } else { 0.0 };
-        let offset_s = *offsets.entry((row.play_id.clone(), row.frame)).or_insert_with(|| step_s * draws.between(-0.1, 0.1));
+        let offset_s = *offsets.entry((row.play_id.clone(), row.frame)).or_insert_with(|| step_s * draws.between(-0.15, 0.15));
         row.time_s += (offset_s * 1e4).round() / 1e4;
         if let (Some(speed), Some(heading)) = (row.speed, row.heading) {
             let by = V2::polar(from_nautical_rad(heading)) * (speed * offset_s);

@@ -36,7 +36,7 @@ pub enum Mess {
     PlayTwice,
     /// One frame of every other play absent for everyone.
     FrameMissingForAll,
-    /// Steps that differ by up to a fifth, positions moved along.
+    /// Steps up to three tenths longer or shorter than they should be, positions moved along.
     UnevenSteps,
     /// The ball runs on for 12 frames.
     BallRunsOn,

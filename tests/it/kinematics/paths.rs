@@ -87,8 +87,10 @@ fn the_general_road_is_the_plain_smoother_with_holes_and_uneven_steps() {
         let noise = Noise { jerk_density: 28.0, sigma_yd: 0.05 };
         let boost = Boost { frame: 30, factor: 30.0 };
         let track = smooth_evenly(&segment, &times, noise, &[boost], &mut SmoothWork::default());
-        let steps: Vec<_> =
-            (1..times.len()).map(|k| white_jerk(times[k] - times[k - 1], 28.0 * if k == 30 || k == 31 { 30.0 } else { 1.0 })).collect();
+        // The steps next to the blow are all that lie within 0.1 s of it; the room is 30 − 1 times 0.2 s, for twice the longer one.
+        let factor = 1.0 + 29.0 * 0.1 / (times[31] - times[30]).max(times[30] - times[29]);
+        let density = |k: usize| if k == 30 || k == 31 { 28.0 * factor } else { 28.0 };
+        let steps: Vec<_> = (1..times.len()).map(|k| white_jerk(times[k] - times[k - 1], density(k))).collect();
         let r2 = 0.05 * 0.05;
         let cov = [[r2, 0.0, 0.0], [0.0, 100.0, 0.0], [0.0, 0.0, 100.0]];
         let axis = |of: fn(V2) -> f64| {

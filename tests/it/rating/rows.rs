@@ -3,7 +3,7 @@
 use super::league::{PLAIN, Plan, league};
 use super::rules::chance;
 use tailchase::model::settings::RatingSettings;
-use tailchase::rating::{Group, compare_sides, rank, rank_players, rank_swing, rank_teams, write_rank_swing};
+use tailchase::rating::{Group, Season, compare_sides, rank, rank_players, rank_swing, rank_teams, write_rank_swing};
 use tailchase::store::{PlayerRow, PursuitRow};
 
 fn near(found: Option<f64>, expected: f64) {
@@ -131,7 +131,7 @@ fn position_is_taken_out_where_groups_are_large() {
         row.position = Some(if is_tackle { "DT" } else { "FS" }.to_owned());
         row.late_yd = row.late_yd.map(|v| if is_tackle { v + 6.0 } else { v });
     }
-    let ranking = rank(&rows, &RatingSettings { draws: 200, ..RatingSettings::default() });
+    let ranking = rank(&Season::of(&rows), &RatingSettings { draws: 200, ..RatingSettings::default() });
     assert_eq!(ranking.positions.iter().map(|o| (o.group, o.players)).collect::<Vec<_>>(), [(Group::Safety, 20), (Group::Tackle, 20)]);
     for p in &ranking.players {
         let sign = if p.position.as_deref() == Some("DT") { 1.0 } else { -1.0 };
@@ -143,7 +143,7 @@ fn position_is_taken_out_where_groups_are_large() {
     for row in rows.iter_mut().filter(|r| r.defender != "p01" && r.defender != "p03") {
         row.position = Some("FS".to_owned());
     }
-    assert!(rank(&rows, &RatingSettings { draws: 0, ..RatingSettings::default() }).positions.is_empty());
+    assert!(rank(&Season::of(&rows), &RatingSettings { draws: 0, ..RatingSettings::default() }).positions.is_empty());
 }
 
 #[test]
@@ -155,15 +155,15 @@ fn kinds_of_play_are_taken_out_where_they_vary() {
         row.late_yd = row.late_yd.map(|v| if is_return { v + 5.0 } else { v });
     }
     let settings = RatingSettings { draws: 0, ..RatingSettings::default() };
-    let fit = rank(&rows, &settings).situation.unwrap();
+    let fit = rank(&Season::of(&rows), &settings).situation.unwrap();
     let term = fit.terms.iter().find(|t| t.name == "play_kind=return").unwrap();
     assert!((term.slope - 5.0).abs() < 3.0 * term.se && term.se < 0.5 && term.kept > 0.9, "{term:?}");
     for row in &mut rows {
         row.play_kind = Some("run".to_owned());
     }
-    assert!(rank(&rows, &settings).situation.unwrap().terms.iter().all(|t| !t.name.starts_with("play_kind")));
+    assert!(rank(&Season::of(&rows), &settings).situation.unwrap().terms.iter().all(|t| !t.name.starts_with("play_kind")));
     // Too few chances for any slope: nothing is fitted, and the adjusted figure is the plain one.
-    let few = rank(&rows[..40], &settings);
+    let few = rank(&Season::of(&rows[..40]), &settings);
     assert!(few.situation.is_none());
     assert!(few.players.iter().all(|p| p.own_yd == p.own_shrunk_yd));
 }
@@ -200,7 +200,7 @@ fn team_rows_by_hand() {
     rows.push(side(chance("22", "2", 4, 3.0), "Otters"));
     rows.push(chance("99", "2", 5, 1.0));
     let settings = RatingSettings::default();
-    let teams = rank_teams(&rows, &settings);
+    let teams = rank_teams(&Season::of(&rows), &settings);
     assert_eq!(
         teams.iter().map(|t| (t.rank, t.side.as_str(), t.players, t.chances, t.stops, t.chances_lost)).collect::<Vec<_>>(),
         [(1, "Otters", 2, 2, 0, 0), (2, "Herons", 2, 3, 1, 1)]
@@ -213,7 +213,7 @@ fn team_rows_by_hand() {
     near(teams[1].own_high_yd, 16.0 / 3.0 + 1.959963984540054 * (2.0 * 2.0 * (16.0 / 9.0) / 9.0_f64).sqrt());
     // Otters: two games of one play each: both variances (0.5² + 0.5²) · 2/4 = 0.25.
     near(teams[0].own_low_yd, 2.5 - 1.959963984540054 * 0.5);
-    let compared = compare_sides(&rows, &settings);
+    let compared = compare_sides(&Season::of(&rows), &settings);
     assert_eq!((compared.teams.len(), compared.rows_without_side), (2, 1));
     let parts: Vec<_> = compared.splits.iter().map(|s| (s.side.as_str(), s.by, s.part, s.chances)).collect();
     assert_eq!(parts, [("Herons", "start", "ahead", 3), ("Herons", "position", "safety", 2), ("Otters", "start", "ahead", 2)]);

@@ -5,7 +5,7 @@ use proptest::prelude::*;
 use std::collections::BTreeSet;
 use tailchase::base::Stream;
 use tailchase::model::settings::RatingSettings;
-use tailchase::rating::{compare_sides, rank, rank_players, rank_teams};
+use tailchase::rating::{Season, compare_sides, rank, rank_players, rank_teams};
 use tailchase::store::{Column, PlayerRow, PursuitRow, Row};
 
 fn quick() -> RatingSettings {
@@ -53,7 +53,7 @@ fn assert_sound(players: &[PlayerRow]) {
     }
 }
 
-fn shuffled(rows: &[PursuitRow], seed: u64) -> Vec<PursuitRow> {
+pub fn shuffled(rows: &[PursuitRow], seed: u64) -> Vec<PursuitRow> {
     let mut stream = Stream::new(seed, "shuffle");
     let mut rows = rows.to_vec();
     for i in (1..rows.len()).rev() {
@@ -67,8 +67,10 @@ fn order_of_rows_does_not_matter() {
     let rows = league(Plan { range_slope: 0.3, ..PLAIN }, 3).rows;
     let settings = RatingSettings::default();
     // The text of a row has every digit of its numbers.
-    let text =
-        |rows: &[PursuitRow]| format!("{:?}{:?}{:?}", rank(rows, &settings), rank_teams(rows, &settings), compare_sides(rows, &settings));
+    let text = |rows: &[PursuitRow]| {
+        let season = Season::of(rows);
+        format!("{:?}{:?}{:?}", rank(&season, &settings), rank_teams(&season, &settings), compare_sides(&season, &settings))
+    };
     let straight = text(&rows);
     for seed in 0..4 {
         assert!(straight == text(&shuffled(&rows, seed)), "shuffle {seed} changed the ranking");
@@ -91,7 +93,7 @@ fn the_seed_moves_the_draws_and_nothing_else() {
 #[test]
 fn edges() {
     assert!(rank_players(&[], &quick()).is_empty());
-    assert!(rank_teams(&[], &quick()).is_empty());
+    assert!(rank_teams(&Season::default(), &quick()).is_empty());
 
     // One player, one chance: nothing can be said about the scatter, so nothing but the raw figure is given.
     let alone = rank_players(&[chance("a", "1", 1, 3.0)], &quick());
@@ -173,7 +175,7 @@ fn broken_settings_and_rows() {
     broken[2].start_range_yd = f64::NAN;
     broken[3].efficiency = Some(f64::INFINITY);
     broken[4].on_course_share = f64::NAN;
-    let ranking = rank(&broken, &quick());
+    let ranking = rank(&Season::of(&broken), &quick());
     assert_eq!(ranking.set_aside, 2);
     assert_sound(&ranking.players);
     let chances = |players: &[PlayerRow]| players.iter().map(|p| p.chances).sum::<i64>();
@@ -201,7 +203,7 @@ proptest! {
                 ..chance(&format!("p{player}"), &format!("g{game}"), i, *own_yd)
             })
             .collect();
-        let ranking = rank(&rows, &quick());
+        let ranking = rank(&Season::of(&rows), &quick());
         assert_sound(&ranking.players);
         let players: BTreeSet<&str> = rows.iter().map(|r| r.defender.as_str()).collect();
         prop_assert_eq!(ranking.players.len(), players.len());
@@ -212,8 +214,8 @@ proptest! {
                 }
             }
         }
-        prop_assert_eq!(&ranking, &rank(&shuffled(&rows, seed), &quick()));
-        let teams = rank_teams(&rows, &quick());
+        prop_assert_eq!(&ranking, &rank(&Season::of(&shuffled(&rows, seed)), &quick()));
+        let teams = rank_teams(&Season::of(&rows), &quick());
         prop_assert!(teams.iter().all(|t| t.own_low_yd.is_none_or(|low| low <= t.own_yd.unwrap())));
     }
 }

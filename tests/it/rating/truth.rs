@@ -2,7 +2,7 @@
 
 use super::league::{League, PLAIN, Plan, league};
 use tailchase::model::settings::RatingSettings;
-use tailchase::rating::{Ranking, rank};
+use tailchase::rating::{Ranking, Season, rank};
 use tailchase::store::PlayerRow;
 
 fn quick() -> RatingSettings {
@@ -38,7 +38,7 @@ fn over_leagues(plan: Plan, leagues: u64) -> Report {
     let all = (plan.players as u64 * leagues) as f64;
     for seed in 0..leagues {
         let league = league(plan, seed);
-        let ranking = rank(&league.rows, &quick());
+        let ranking = rank(&Season::of(&league.rows), &quick());
         for p in &ranking.players {
             let truth_yd = league.truth_yd[&p.player];
             let true_rank = 1 + league.truth_yd.values().filter(|t| **t < truth_yd).count() as i64;
@@ -70,7 +70,7 @@ fn badness_is_not_explained_away() {
     let (mut slope, mut kept, leagues) = (0.0, 0.0, 30);
     for seed in 0..leagues {
         let league = league(plan, seed);
-        let ranking = rank(&league.rows, &quick());
+        let ranking = rank(&Season::of(&league.rows), &quick());
         let fit = ranking.situation.as_ref().unwrap();
         slope += fit.terms.iter().find(|t| t.name == "start_range_yd").unwrap().slope / leagues as f64;
         // Regression of the adjusted figure on the truth, the shrinkage undone by the size of the season.
@@ -108,7 +108,7 @@ fn nothing_between_players_is_said_so() {
     let (mut width, mut covered, leagues) = (0.0, 0.0, 60);
     for seed in 0..leagues {
         let league = league(Plan { spread_yd: 0.0, ..PLAIN }, seed);
-        for p in &rank(&league.rows, &quick()).players {
+        for p in &rank(&Season::of(&league.rows), &quick()).players {
             width += (p.rank_high - p.rank_low + 1) as f64 / (30.0 * 30.0 * leagues as f64);
             covered += f64::from(u8::from((p.own_low_yd.unwrap()..=p.own_high_yd.unwrap()).contains(&4.0))) / (30.0 * leagues as f64);
         }
@@ -122,7 +122,7 @@ fn shrunken_is_nearer_than_raw() {
     let (mut raw, mut shrunk) = (0.0, 0.0);
     for seed in 0..60 {
         let league = league(Plan { games: 3, ..PLAIN }, seed);
-        for p in &rank(&league.rows, &quick()).players {
+        for p in &rank(&Season::of(&league.rows), &quick()).players {
             raw += (p.own_raw_yd.unwrap() - league.truth_yd[&p.player]).powi(2);
             shrunk += (p.own_shrunk_yd.unwrap() - league.truth_yd[&p.player]).powi(2);
         }

@@ -7,8 +7,8 @@ use proptest::prelude::*;
 use std::fs::{self, File};
 use std::path::Path;
 use tailchase::store::{
-    CarryRow, CsvCell, FrameRow, Kind, PlayerRow, PursuitRow, Row, SetAsideRow, StoreError, csv_text, decode_id, each_game, encode_id,
-    folder_name, game_folder, guarded, read_all, read_table, table_csv, write_table,
+    BriefRow, CarryRow, CsvCell, FrameRow, Kind, PlayerRow, PursuitRow, Row, SetAsideRow, StoreError, csv_text, decode_id, each_game,
+    encode_id, folder_name, game_folder, guarded, read_all, read_row, read_table, table_csv, write_table,
 };
 
 #[test]
@@ -153,6 +153,37 @@ fn damaged_files_are_an_error_and_never_a_panic() {
     fs::write(&path, "game,play\n1,2\n").unwrap();
     assert!(matches!(read_table::<PursuitRow>(&path), Err(StoreError::Parquet { .. })));
     assert!(matches!(read_table::<PursuitRow>(&dir.path().join("absent")), Err(StoreError::Io { .. })));
+}
+
+#[test]
+fn a_narrow_row_is_the_whole_row_with_fewer_columns() {
+    let dir = tempfile::tempdir().unwrap();
+    let path = dir.path().join("part.parquet");
+    let rows = pursuits("g", 4);
+    write_table(&path, &rows).unwrap();
+    assert_eq!(read_table::<BriefRow>(&path).unwrap(), rows.iter().map(BriefRow::from).collect::<Vec<_>>());
+    for narrow in BriefRow::COLUMNS {
+        let whole = PursuitRow::COLUMNS.iter().find(|c| c.name == narrow.name).unwrap();
+        assert_eq!((narrow.kind, narrow.optional), (whole.kind, whole.optional), "{}", narrow.name);
+    }
+    assert_eq!(BriefRow::TABLE, PursuitRow::TABLE);
+    assert!(2 * BriefRow::COLUMNS.len() < PursuitRow::COLUMNS.len() + 1);
+}
+
+#[test]
+fn one_row_is_read_alone() {
+    let dir = tempfile::tempdir().unwrap();
+    let path = dir.path().join("part.parquet");
+    let rows = pursuits("g", 4);
+    write_table(&path, &rows).unwrap();
+    for (place, row) in rows.iter().enumerate() {
+        assert_eq!(read_row::<PursuitRow>(&path, place).unwrap().as_ref(), Some(row));
+    }
+    for beyond in [4, 5, usize::MAX] {
+        assert_eq!(read_row::<PursuitRow>(&path, beyond).unwrap(), None);
+    }
+    fs::write(&path, "no table").unwrap();
+    assert!(matches!(read_row::<PursuitRow>(&path, 0), Err(StoreError::Parquet { .. })));
 }
 
 #[test]
