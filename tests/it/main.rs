@@ -2,6 +2,7 @@
 
 mod carry;
 mod cli;
+mod coverage;
 mod demo;
 mod demo_write;
 mod dictionary;
@@ -10,10 +11,14 @@ mod ingest;
 mod job;
 mod kinematics;
 mod layers;
+mod order;
 mod planted;
+mod rates;
 mod rating;
 mod report;
+mod road;
 mod stats;
 mod store;
 mod turned;
+mod untidy;
 mod whole;
