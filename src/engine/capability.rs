@@ -1,33 +1,34 @@
 //! Capability: top speeds read off a game's smoothed speeds, pooled towards the position group.
 
 use super::path::TopSpeed;
-use crate::model::position_group;
+use crate::model::Group;
 use crate::model::settings::MotionSettings;
 use std::collections::BTreeMap;
 use std::sync::Arc;
 
-/// Typical top speeds by position group, yd/s, measured on open league data (professional, 10 Hz).
-const GROUP_TOPS_YPS: [(&str, f64); 10] = [
-    ("cornerback", 9.8),
-    ("safety", 9.5),
-    ("linebacker", 8.7),
-    ("defensive_end", 7.7),
-    ("defensive_tackle", 6.8),
-    ("receiver", 9.6),
-    ("back", 9.3),
-    ("tight_end", 8.6),
-    ("quarterback", 7.7),
-    ("offensive_line", 6.6),
-];
+/// Typical top speed of a position group, yd/s, measured on open league data (professional, 10 Hz).
+fn typical_yps(group: Group) -> Option<f64> {
+    Some(match group {
+        Group::Cornerback => 9.8,
+        Group::Safety => 9.5,
+        Group::Linebacker => 8.7,
+        Group::End => 7.7,
+        Group::Tackle => 6.8,
+        Group::Receiver => 9.6,
+        Group::Back => 9.3,
+        Group::TightEnd => 8.6,
+        Group::Quarterback => 7.7,
+        Group::OffensiveLine => 6.6,
+        Group::Kicker => return None,
+    })
+}
+
 /// For a position that the file does not give: the mean of a defence's groups.
 const UNKNOWN_TOP_YPS: f64 = 8.8;
 
 /// The position group's typical top speed, yd/s.
 pub fn group_top_yps(position: Option<&str>) -> f64 {
-    position
-        .and_then(position_group)
-        .and_then(|group| GROUP_TOPS_YPS.iter().find(|(name, _)| *name == group))
-        .map_or(UNKNOWN_TOP_YPS, |(_, top)| *top)
+    position.and_then(Group::of).and_then(typical_yps).unwrap_or(UNKNOWN_TOP_YPS)
 }
 
 const BIN_YPS: f64 = 0.02;

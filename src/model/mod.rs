@@ -14,6 +14,6 @@ pub use event::EventMark;
 pub use field::Field;
 pub use finding::{Finding, FindingKind, Findings};
 pub use play::{Attack, Mover, Play, PlayHints, RawTrack, SetAside, SourceRow};
-pub use position::position_group;
+pub use position::Group;
 pub use settings::Settings;
 pub use track::{Cov, MoverTrack, Noise, Track};

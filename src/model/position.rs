@@ -1,20 +1,64 @@
-//! Position groups.
+//! Position groups from the position text of a file: common codes and plain words.
 
-/// Position group of a position's usual abbreviation or name; common practice, no source.
-pub fn position_group(position: &str) -> Option<&'static str> {
-    let word: String = position.chars().filter(char::is_ascii_alphabetic).collect::<String>().to_ascii_uppercase();
-    Some(match word.as_str() {
-        "CB" | "DB" | "NB" | "CORNERBACK" | "CORNER" | "NICKEL" => "cornerback",
-        "S" | "FS" | "SS" | "SAF" | "SAFETY" | "FREESAFETY" | "STRONGSAFETY" => "safety",
-        "LB" | "ILB" | "OLB" | "MLB" | "WLB" | "SLB" | "LINEBACKER" => "linebacker",
-        "DE" | "EDGE" | "DEFENSIVEEND" | "END" => "defensive_end",
-        "DT" | "NT" | "DL" | "IDL" | "DEFENSIVETACKLE" | "NOSETACKLE" | "DEFENSIVELINE" => "defensive_tackle",
-        "WR" | "RECEIVER" | "WIDERECEIVER" | "PR" | "KR" => "receiver",
-        "RB" | "HB" | "FB" | "TB" | "BACK" | "RUNNINGBACK" | "FULLBACK" => "back",
-        "TE" | "TIGHTEND" => "tight_end",
-        "QB" | "QUARTERBACK" => "quarterback",
-        "C" | "G" | "T" | "OL" | "OT" | "OG" | "LT" | "RT" | "LG" | "RG" | "LS" | "CENTER" | "CENTRE" | "GUARD" | "TACKLE"
-        | "OFFENSIVELINE" => "offensive_line",
-        _ => return None,
-    })
+/// Players who are asked for the same kind of running.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
+pub enum Group {
+    Cornerback,
+    Safety,
+    Linebacker,
+    End,
+    Tackle,
+    Receiver,
+    Back,
+    TightEnd,
+    Quarterback,
+    OffensiveLine,
+    Kicker,
+}
+
+impl Group {
+    pub fn word(self) -> &'static str {
+        match self {
+            Group::Cornerback => "cornerback",
+            Group::Safety => "safety",
+            Group::Linebacker => "linebacker",
+            Group::End => "end",
+            Group::Tackle => "tackle",
+            Group::Receiver => "receiver",
+            Group::Back => "back",
+            Group::TightEnd => "tight end",
+            Group::Quarterback => "quarterback",
+            Group::OffensiveLine => "offensive line",
+            Group::Kicker => "kicker",
+        }
+    }
+
+    /// The group of a position text, whatever its case, spaces and hyphens; none for one that is not known or says no group
+    /// (`DB` may be a cornerback or a safety, `DL` an end or a tackle).
+    ///
+    /// ```
+    /// use tailchase::model::Group;
+    /// assert_eq!(Group::of("FS"), Some(Group::Safety));
+    /// assert_eq!(Group::of("Outside Linebacker"), Some(Group::Linebacker));
+    /// assert_eq!(Group::of("left-wing"), None);
+    /// ```
+    pub fn of(position: &str) -> Option<Group> {
+        let code: String = position.chars().filter(|c| c.is_alphanumeric()).flat_map(char::to_uppercase).collect();
+        Some(match code.as_str() {
+            "CB" | "LCB" | "RCB" | "NB" | "NCB" | "SCB" | "CORNER" | "CORNERBACK" | "NICKEL" | "NICKELBACK" => Group::Cornerback,
+            "S" | "FS" | "SS" | "SAF" | "SAFETY" | "FREESAFETY" | "STRONGSAFETY" => Group::Safety,
+            "LB" | "ILB" | "OLB" | "MLB" | "WLB" | "SLB" | "LILB" | "RILB" | "LOLB" | "ROLB" | "WILL" | "MIKE" | "SAM" | "LINEBACKER"
+            | "INSIDELINEBACKER" | "OUTSIDELINEBACKER" | "MIDDLELINEBACKER" => Group::Linebacker,
+            "DE" | "LDE" | "RDE" | "EDGE" | "END" | "DEFENSIVEEND" | "DEFENCEEND" => Group::End,
+            "DT" | "LDT" | "RDT" | "NT" | "NG" | "NOSETACKLE" | "NOSEGUARD" | "DEFENSIVETACKLE" => Group::Tackle,
+            "WR" | "LWR" | "RWR" | "SWR" | "FL" | "SE" | "RECEIVER" | "WIDERECEIVER" => Group::Receiver,
+            "RB" | "HB" | "TB" | "FB" | "RUNNINGBACK" | "HALFBACK" | "FULLBACK" | "TAILBACK" => Group::Back,
+            "TE" | "TIGHTEND" => Group::TightEnd,
+            "QB" | "QUARTERBACK" => Group::Quarterback,
+            "C" | "G" | "LG" | "RG" | "OG" | "OT" | "LT" | "RT" | "OL" | "OFFENSIVELINE" | "OFFENSIVETACKLE" | "OFFENSIVEGUARD"
+            | "GUARD" | "CENTER" | "CENTRE" => Group::OffensiveLine,
+            "K" | "P" | "PK" | "LS" | "KICKER" | "PUNTER" | "LONGSNAPPER" => Group::Kicker,
+            _ => return None,
+        })
+    }
 }

@@ -5,7 +5,6 @@ pub mod chance;
 pub mod measure;
 mod packed;
 mod player;
-pub mod position;
 pub mod position_effect;
 pub mod ranking;
 mod roster;
@@ -17,9 +16,9 @@ mod steering;
 pub mod team;
 mod texts;
 
+pub use crate::model::Group;
 pub use chance::own_yd;
 pub use measure::{Measured, PoolingReport};
-pub use position::Group;
 pub use ranking::{Ranking, rank, rank_players};
 pub use scout::{SideComparison, SideSplit, compare_sides};
 pub use season::Season;

@@ -4,7 +4,7 @@
 //! and as a random effect: a group of three poor players must not have its poorness taken for its position.
 
 use super::measure::Measured;
-use super::position::Group;
+use crate::model::Group;
 use crate::stats::{TauMethod, pool, tau2};
 use std::collections::BTreeMap;
 

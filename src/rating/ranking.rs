@@ -2,12 +2,12 @@
 
 use super::measure::{Measured, PoolingReport, pool_players, raw_means};
 use super::player::{Figures, player_row};
-use super::position::Group;
 use super::position_effect::{PositionOffset, position_offsets};
 use super::roster::{Defender, defenders, grouped};
 use super::season::Season;
 use super::situation::{SituationFit, adjust};
 use super::steering::steering;
+use crate::model::Group;
 use crate::model::settings::RatingSettings;
 use crate::stats::{RankDraws, rank_intervals};
 use crate::store::rows::{PlayerRow, PursuitRow};

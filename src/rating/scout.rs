@@ -1,11 +1,11 @@
 //! Sides compared: where from a defence is beaten, and at which positions.
 
 use super::packed::Chance;
-use super::position::Group;
 use super::roster::Placed;
 use super::season::Season;
 use super::team::{by_side, own_yards, rank_teams};
 use super::texts::Code;
+use crate::model::Group;
 use crate::model::settings::RatingSettings;
 use crate::store::rows::TeamRow;
 use std::collections::{BTreeMap, BTreeSet};

@@ -88,7 +88,7 @@ fn firsts(pursuits: &[PursuitRow]) -> BTreeMap<Pair, &PursuitRow> {
 }
 
 /// Pairs of (clean, spoiled) pursuits; the pairs must be the same but for movers who are gone.
-fn pairs<'a>(spoiled: &'a Spoiled) -> Vec<(&'a PursuitRow, &'a PursuitRow)> {
+fn pairs(spoiled: &Spoiled) -> Vec<(&PursuitRow, &PursuitRow)> {
     let plain = |id: &str| id.strip_suffix(".0").unwrap_or(id).to_owned();
     let present: BTreeSet<(String, String)> = spoiled.rows.iter().map(|r| (r.play_id.clone(), plain(&r.mover_id))).collect();
     let mut before = firsts(&clean().audited.pursuits);
