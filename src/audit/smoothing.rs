@@ -47,13 +47,17 @@ pub fn smooth_play(play: &Play, prepared: &Prepared, noise: Noise, settings: &Se
 
     let mut speeds = SpeedBook::default();
     let mut own = OwnCheck::default();
-    for (mover, track) in play.movers.iter().zip(&tracks).enumerate().map(|(i, (m, t))| ((i, m), t)) {
+    for (index, (mover, track)) in play.movers.iter().zip(&tracks).enumerate() {
+        let carried = prepared.carries.iter().any(|c| c.carrier == index);
         for piece in &track.pieces {
             if piece.len() > 1 {
                 let dt_s = (play.time_s[piece.end() - 1] - play.time_s[piece.first]) / (piece.len() - 1) as f64;
-                speeds.add(&mover.1.id, &mover.1.position, speeds_shown(piece), dt_s);
+                speeds.add(&mover.id, &mover.position, speeds_shown(piece), dt_s);
             }
-            own.add(&play.tracks[mover.0], piece);
+            // The carriers' rows are enough to see whether a file's own speeds and headings agree.
+            if carried {
+                own.add(&play.tracks[index], piece);
+            }
         }
     }
     Smoothed { tracks, speeds, own }

@@ -34,29 +34,33 @@ pub fn group_top_yps(position: Option<&str>) -> f64 {
 const BIN_YPS: f64 = 0.02;
 const BINS: usize = 800;
 
-/// How long a player was seen at which speed: a histogram in seconds. Adding is order-free up to rounding of the
-/// counts, so frames are counted in whole milliseconds.
+/// How long a player was seen at which speed: (bin, whole milliseconds) as they come, so that a play's log is small and
+/// the order of adding cannot change a sum.
 #[derive(Clone, Debug)]
-pub struct SpeedLog {
-    milliseconds: Vec<u32>,
+struct SpeedLog {
+    seen: Vec<(u16, u16)>,
     position: Option<Arc<str>>,
 }
 
 impl SpeedLog {
     fn new(position: Option<Arc<str>>) -> SpeedLog {
-        SpeedLog { milliseconds: vec![0; BINS], position }
+        SpeedLog { seen: Vec::new(), position }
     }
 
     fn add(&mut self, speed_yps: f64, dt_s: f64) {
-        let bin = (speed_yps / BIN_YPS) as usize;
-        self.milliseconds[bin.min(BINS - 1)] += (dt_s * 1000.0).round() as u32;
+        let bin = ((speed_yps / BIN_YPS) as usize).min(BINS - 1);
+        self.seen.push((bin as u16, (dt_s * 1000.0).round() as u16));
     }
 
     /// Quantile of the speeds above a fast walk, and the seconds spent above `fast_yps`.
     fn read(&self, share: f64, fast_yps: f64) -> Option<(f64, f64)> {
         const WALK_YPS: f64 = 2.0;
-        let moving = &self.milliseconds[(WALK_YPS / BIN_YPS) as usize..];
-        let total: u64 = moving.iter().map(|n| u64::from(*n)).sum();
+        let mut milliseconds = [0_u64; BINS];
+        for (bin, ms) in &self.seen {
+            milliseconds[usize::from(*bin)] += u64::from(*ms);
+        }
+        let moving = &milliseconds[(WALK_YPS / BIN_YPS) as usize..];
+        let total: u64 = moving.iter().sum();
         if total == 0 {
             return None;
         }
@@ -64,14 +68,14 @@ impl SpeedLog {
         let mut seen = 0.0;
         let mut top_yps = WALK_YPS;
         for (i, n) in moving.iter().enumerate() {
-            let n = f64::from(*n);
+            let n = *n as f64;
             if n > 0.0 && seen + n >= wanted {
                 top_yps = WALK_YPS + (i as f64 + ((wanted - seen) / n).clamp(0.0, 1.0)) * BIN_YPS;
                 break;
             }
             seen += n;
         }
-        let fast: u64 = self.milliseconds[((fast_yps / BIN_YPS) as usize).min(BINS)..].iter().map(|n| u64::from(*n)).sum();
+        let fast: u64 = milliseconds[((fast_yps / BIN_YPS) as usize).min(BINS)..].iter().sum();
         Some((top_yps, fast as f64 / 1000.0))
     }
 }
@@ -101,9 +105,7 @@ impl SpeedBook {
                     self.logs.insert(id, log);
                 }
                 Some(mine) => {
-                    for (a, b) in mine.milliseconds.iter_mut().zip(&log.milliseconds) {
-                        *a += b;
-                    }
+                    mine.seen.extend_from_slice(&log.seen);
                     // Of two positions the first in order of text, so that the order of work cannot matter.
                     mine.position = match (mine.position.take(), log.position) {
                         (Some(a), Some(b)) => Some(a.min(b)),
