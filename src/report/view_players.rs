@@ -58,6 +58,17 @@ pub struct PlayersView {
     pub whisker_scale_svg: String,
     pub bar_scale_svg: String,
     pub any_too_few: bool,
+    /// All have the same pooled figure: these data tell no two players apart.
+    pub all_alike: bool,
+}
+
+/// Whether pooling leaves nothing between the players.
+fn all_alike(players: &[PlayerRow]) -> bool {
+    const SAME_YD: f64 = 1e-6;
+    let mut pooled = players.iter().filter_map(|p| p.own_yd);
+    let Some(first) = pooled.next() else { return false };
+    let mut others = pooled.peekable();
+    others.peek().is_some() && others.all(|yd| (yd - first).abs() < SAME_YD)
 }
 
 /// The ranking in the order given. `anchor_of` finds the anchor of a player's drawn pursuit.
@@ -72,6 +83,7 @@ pub fn players_view(players: &[PlayerRow], anchor_of: impl Fn(&str) -> String) -
         whisker_scale_svg: scale(&own),
         bar_scale_svg: scale(&bars),
         any_too_few: players.iter().any(|p| p.too_few),
+        all_alike: all_alike(players),
     }
 }
 

@@ -411,3 +411,15 @@ fn ranking_picture_shows_who_had_enough() {
     assert!(!svg.contains("NaN") && !svg.contains("inf"));
     assert!(tailchase::report::ranking_chart(&players[2..]).is_none());
 }
+
+/// Where pooling leaves nothing between the players the page says so, and only there.
+#[test]
+fn page_says_when_no_two_players_can_be_told_apart() {
+    let player = |rank: i64, own_yd: f64| PlayerRow { rank, player: rank.to_string(), own_yd: Some(own_yd), ..PlayerRow::default() };
+    let settings = tailchase::model::Settings::default();
+    let of = |players: &[PlayerRow]| tailchase::report::page(&Default::default(), players, &[], &[], &[], &settings);
+    let words = "tell no two players apart";
+    assert!(of(&[player(1, 1.27), player(2, 1.27)]).contains(words));
+    assert!(!of(&[player(1, 1.27), player(2, 1.31)]).contains(words));
+    assert!(!of(&[player(1, 1.27)]).contains(words));
+}
