@@ -14,6 +14,7 @@ use crate::engine::outcome::{Chance, chance, efficiency, leans_rad, need_peak_yp
 use crate::engine::path::TopSpeed;
 use crate::engine::reach::State;
 use crate::model::{Attack, Carry, CarryEnd, Ending, MoverTrack, Play, Pursuit, Settings, Track};
+use crate::stats::Circular;
 use crate::store::{CarryRow, PursuitRow};
 use std::collections::BTreeMap;
 use std::sync::Arc;
@@ -122,7 +123,7 @@ impl Scene<'_> {
         row.charged = ledger.account.is_some() && !matches!(fate, Chance::Never) && ending != Ending::OutOfIt;
         row.efficiency = ledger.account.filter(|_| row.charged).and_then(|a| efficiency(chase, &chaser, a.starts_at));
         let leans: Vec<f64> = leans_rad(chase, &chaser, from.max(ledger.break_at.unwrap_or(0)));
-        row.lean_deg = circular_mean_rad(&leans).map(f64::to_degrees);
+        row.lean_deg = Circular::of(&leans).and_then(|c| c.mean_rad).map(f64::to_degrees);
         self.fill_account(&mut row, &ledger);
         self.fill_contact(&mut row, pursuit, ending);
         if let Some(law) = steering(chase, &chaser, &looks, track, carry.start, ledger.break_at.unwrap_or(0)) {
@@ -286,14 +287,6 @@ impl Scene<'_> {
 
 fn text(value: &Option<Arc<str>>) -> Option<String> {
     value.as_deref().map(str::to_owned)
-}
-
-fn circular_mean_rad(angles_rad: &[f64]) -> Option<f64> {
-    let mut sum = V2::ZERO;
-    for angle in angles_rad {
-        sum += V2::polar(*angle);
-    }
-    (!angles_rad.is_empty() && sum.norm() > 1e-9).then(|| sum.angle_rad())
 }
 
 /// Counts frames at speed, and those in which the push needed for the motion is beyond full by more than its error bar

@@ -8,6 +8,7 @@ use crate::engine::intercept::{SidelineCourse, triangle};
 use crate::engine::ledger::Chaser;
 use crate::engine::steering::{Instant, Steering, fit};
 use crate::model::{Attack, Cov, Settings, Track};
+use crate::stats::median_in_place;
 use crate::store::PursuitRow;
 
 /// Below this speed a heading means nothing, yd/s.
@@ -63,19 +64,8 @@ fn share(sights: &[&Sight], test: impl Fn(&Sight) -> bool) -> Option<f64> {
     (!sights.is_empty()).then(|| count as f64 / sights.len() as f64)
 }
 
-/// Median: the mean of the two middle values for an even count.
-pub fn median(values: impl Iterator<Item = f64>) -> Option<f64> {
-    let mut sorted: Vec<f64> = values.collect();
-    let n = sorted.len();
-    if n == 0 {
-        return None;
-    }
-    let (below, middle, _) = sorted.select_nth_unstable_by(n / 2, f64::total_cmp);
-    let middle = *middle;
-    if n % 2 == 1 {
-        return Some(middle);
-    }
-    below.iter().copied().max_by(f64::total_cmp).map(|lower| 0.5 * (lower + middle))
+fn median(values: impl Iterator<Item = f64>) -> Option<f64> {
+    median_in_place(&mut values.collect::<Vec<_>>())
 }
 
 /// Fills the textbook intercepts at state `at`: the triangle at his present speed, the sideline at his top speed.

@@ -1,7 +1,7 @@
 //! Smoothed tracks around the carries: only movers and frames that a carry can touch.
 
 use super::prepare::Prepared;
-use crate::carry::find_pursuits;
+use crate::carry::contacts;
 use crate::engine::capability::SpeedBook;
 use crate::kinematics::{Boost, OwnCheck, SmoothWork, smooth_range};
 use crate::model::{MoverTrack, Noise, Play, Settings, Track};
@@ -31,11 +31,9 @@ pub fn smooth_play(play: &Play, prepared: &Prepared, noise: Noise, settings: &Se
     // Who met whom, as far as the plain tracks tell.
     let mut blows: Vec<Vec<usize>> = vec![Vec::new(); play.movers.len()];
     for carry in &prepared.carries {
-        for pursuit in find_pursuits(play, &tracks, carry, &settings.carry) {
-            if let Some(contact) = &pursuit.contact {
-                blows[pursuit.defender].push(contact.frame);
-                blows[carry.carrier].push(contact.frame);
-            }
+        for (defender, frame) in contacts(play, &tracks, carry, &settings.carry) {
+            blows[defender].push(frame);
+            blows[carry.carrier].push(frame);
         }
     }
     for (mover, frames) in blows.iter_mut().enumerate().filter(|(_, f)| !f.is_empty()) {

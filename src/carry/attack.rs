@@ -8,6 +8,7 @@
 use super::scene::Scene;
 use crate::model::settings::CarrySettings;
 use crate::model::{Attack, EventMark, MoverTrack, Play};
+use crate::stats::median_in_place;
 
 /// Difference of the sides' median x below which they do not face each other, yd.
 const FACING_YD: f64 = 0.5;
@@ -83,7 +84,7 @@ fn facing(scene: &Scene, carrier: usize, frame: usize) -> Option<Attack> {
             own.push(p.x);
         }
     }
-    let ahead_yd = median(&mut other)? - median(&mut own)?;
+    let ahead_yd = median_in_place(&mut other)? - median_in_place(&mut own)?;
     if ahead_yd.abs() < FACING_YD {
         return None;
     }
@@ -129,13 +130,4 @@ fn side_at_ball(scene: &Scene, snap: usize) -> Option<usize> {
         }
     }
     scene.side(best?.1)
-}
-
-pub(super) fn median(values: &mut [f64]) -> Option<f64> {
-    if values.is_empty() {
-        return None;
-    }
-    values.sort_unstable_by(f64::total_cmp);
-    let mid = values.len() / 2;
-    Some(if values.len() % 2 == 1 { values[mid] } else { 0.5 * (values[mid - 1] + values[mid]) })
 }

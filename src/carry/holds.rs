@@ -5,10 +5,10 @@
 //! the ball moves; nobody costs a constant; a change of story costs, which is the hysteresis in distance and
 //! time. Costs are counted per tenth of a second, so that the frame rate does not matter.
 
-use super::attack::median;
 use super::scene::Scene;
 use crate::base::V2;
 use crate::model::{MoverTrack, Track};
+use crate::stats::median_in_place;
 
 /// One mover's hold of the ball, frames inclusive.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -212,10 +212,10 @@ impl Grip {
         if xs.len() < 2 {
             return None;
         }
-        let off = V2::new(median(&mut xs)?, median(&mut ys)?);
+        let off = V2::new(median_in_place(&mut xs)?, median_in_place(&mut ys)?);
         let mut gaps: Vec<f64> = offs().map(|o| (o - off).norm()).collect();
         // The median of the distance of a round normal scatter is 1.177 sigmas (Rayleigh).
-        let within_yd = (3.0 / 1.177 * median(&mut gaps)?).clamp(GRIP_YD.0, GRIP_YD.1);
+        let within_yd = (3.0 / 1.177 * median_in_place(&mut gaps)?).clamp(GRIP_YD.0, GRIP_YD.1);
         Some(Grip { mover, off, within_yd })
     }
 

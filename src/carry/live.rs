@@ -3,10 +3,10 @@
 //! By the snap or kick mark; without one, by the end of the ball's rest: the first time it has lain still with
 //! the two sides on either side of it.
 
-use super::attack::median;
 use super::scene::Scene;
 use crate::base::V2;
 use crate::model::EventMark;
+use crate::stats::median_in_place;
 
 /// How far a resting ball may seem to move, yd: noise of both ends of the comparison.
 const REST_YD: f64 = 0.5;
@@ -38,7 +38,7 @@ pub(super) fn live(scene: &Scene) -> Live {
 fn lay_at(scene: &Scene, snap: usize) -> Option<V2> {
     let spots = || (scene.before(snap, LAY_S)..snap).filter_map(|f| scene.ball_pos(f));
     let (mut xs, mut ys): (Vec<f64>, Vec<f64>) = (spots().map(|p| p.x).collect(), spots().map(|p| p.y).collect());
-    Some(V2::new(median(&mut xs)?, median(&mut ys)?))
+    Some(V2::new(median_in_place(&mut xs)?, median_in_place(&mut ys)?))
 }
 
 fn by_rest(scene: &Scene) -> Option<Live> {

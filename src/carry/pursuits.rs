@@ -43,15 +43,13 @@ pub fn find_pursuits(play: &Play, tracks: &[MoverTrack], carry: &Carry, settings
     found
 }
 
-/// The frames in which an opponent comes to contact with the carrier, in order, each once.
-pub fn contacts(play: &Play, tracks: &[MoverTrack], carry: &Carry, settings: &CarrySettings) -> Vec<usize> {
+/// Who comes to contact with the carrier and in which frames: (defender, frame), in that order.
+pub fn contacts(play: &Play, tracks: &[MoverTrack], carry: &Carry, settings: &CarrySettings) -> Vec<(usize, usize)> {
     let mut found = Vec::new();
     let Some(runner) = runner(tracks, carry) else { return found };
-    for (_, piece) in opponents(play, tracks, carry) {
-        each_contact(play, runner, piece, carry, settings, |leg| found.extend(leg.contact));
+    for (defender, piece) in opponents(play, tracks, carry) {
+        each_contact(play, runner, piece, carry, settings, |leg| found.extend(leg.contact.map(|frame| (defender, frame))));
     }
-    found.sort_unstable();
-    found.dedup();
     found
 }
 

@@ -3,6 +3,8 @@
 //! γ heading, λ bearing, δ = heading less bearing. N alone is proportional navigation (the larger N, the steadier the
 //! bearing); K alone pure pursuit. The delay τ is searched on the file's own frames.
 
+use super::bearing::TWO_SIDED;
+
 /// One instant of a pursuit, in order of time. Radians, seconds; `weight` is the inverse variance of the heading rate.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Instant {
@@ -106,10 +108,9 @@ impl Steering {
     /// bearing does, which steadies it) and K does not lie above 0; `runs at the man` when K lies above 0 and N not
     /// above 0; `mixed` when both do. Otherwise it cannot be told.
     pub fn word(&self) -> Option<SteeringWord> {
-        const Z: f64 = 1.96;
-        let n_low = self.n - Z * self.n_se;
+        let n_low = self.n - TWO_SIDED * self.n_se;
         let n_above = n_low > 0.0;
-        let k_above = self.k_per_s - Z * self.k_se > 0.0;
+        let k_above = self.k_per_s - TWO_SIDED * self.k_se > 0.0;
         match (n_above, k_above) {
             (true, false) if n_low > 1.0 => Some(SteeringWord::Leads),
             (true, true) => Some(SteeringWord::Mixed),

@@ -53,7 +53,7 @@ struct Finished {
 impl<'a> Run<'a> {
     fn new(request: &'a AuditRequest, source: Source, out: OutDir, progress: &'a dyn Progress) -> Result<Run<'a>, PipelineError> {
         let marks = if request.fresh { Default::default() } else { read_marks(out.path())? };
-        let settings = toml::to_string(&request.settings).unwrap_or_default();
+        let settings = format!("{:?}", request.settings);
         let options = format!("{:?} {}", request.ingest.mapping, request.frames.word());
         let tables = table_hashes(&request.ingest)?;
         let made_with = fingerprint(&[env!("CARGO_PKG_VERSION"), &settings, &options, &tables]);
@@ -67,11 +67,11 @@ impl<'a> Run<'a> {
         let mut raw = self.source.next_raw()?;
         let mut finished: Option<Finished> = None;
         while raw.is_some() || finished.is_some() {
+            let more = raw.is_some();
             let current = match raw.take() {
                 Some(game) => self.needed(game)?,
                 None => None,
             };
-            let more = current.is_some() || finished.is_none();
             let (request, made_with, out) = (self.request, self.made_with.as_str(), self.out.path());
             let source = &mut self.source;
             let (next_and_written, audited) = rayon::join(
@@ -91,10 +91,6 @@ impl<'a> Run<'a> {
             }
             raw = next?;
             finished = audited?;
-            if finished.is_none() && raw.is_none() && !more {
-                // The last game was written while nothing was read: there may be more.
-                raw = self.source.next_raw()?;
-            }
             self.tell(&mut told, finished.as_ref());
         }
         self.progress.finish();

@@ -16,7 +16,7 @@ pub use circular::Circular;
 pub use cluster::{Clustered, cluster_variance, clustered_means};
 pub use least_squares::{Fit, least_squares};
 pub use pooling::{Pooled, Shrunken, pool, pool_at};
-pub use quantile::{median, quantile};
+pub use quantile::{median, median_in_place, quantile};
 pub use rank_draws::{RankDraws, rank_intervals};
 pub use tau::{TauMethod, tau2};
 pub use tau_posterior::TauPosterior;

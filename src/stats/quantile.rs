@@ -43,3 +43,24 @@ pub fn quantile_sorted(sorted: &[f64], share: f64) -> Option<f64> {
 pub fn median(sample: &[f64]) -> Option<f64> {
     quantile(sample, 0.5)
 }
+
+/// The same, by selection instead of sorting: for short samples in inner loops, which it leaves in another order. Values
+/// that are not finite take part in `total_cmp`'s order.
+///
+/// ```
+/// use tailchase::stats::median_in_place;
+/// assert_eq!(median_in_place(&mut [4.0, 1.0, 3.0, 2.0]), Some(2.5));
+/// assert_eq!(median_in_place(&mut []), None);
+/// ```
+pub fn median_in_place(sample: &mut [f64]) -> Option<f64> {
+    let n = sample.len();
+    if n == 0 {
+        return None;
+    }
+    let (below, middle, _) = sample.select_nth_unstable_by(n / 2, f64::total_cmp);
+    let middle = *middle;
+    if n % 2 == 1 {
+        return Some(middle);
+    }
+    below.iter().copied().max_by(f64::total_cmp).map(|lower| 0.5 * (lower + middle))
+}

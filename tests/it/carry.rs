@@ -691,7 +691,7 @@ fn stoppers_and_contacts() {
     let found = find_pursuits(&play, &tracks, &carry, &settings);
     assert_eq!(found.iter().map(|p| (p.number, p.defender)).collect::<Vec<_>>(), [(1, 1), (2, 2), (3, 3)]);
     assert_eq!(stoppers(&found, &carry), [1, 3]);
-    assert_eq!(contacts(&play, &tracks, &carry, &settings), [8]);
+    assert_eq!(contacts(&play, &tracks, &carry, &settings), [(1, 8), (3, 8)]);
     assert_eq!(stoppers(&found, &Carry { end_how: CarryEnd::CrossedGoal, ..carry }), Vec::<usize>::new());
 }
 

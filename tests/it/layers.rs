@@ -22,7 +22,7 @@ const LAYERS: [Layer; 14] = [
     Layer { name: "engine", uses: &["base", "stats", "model", "kinematics", "carry"], crates: &["libm"] },
     Layer { name: "demo", uses: &["base", "model", "engine"], crates: &["polars", "csv"] },
     Layer { name: "store", uses: &["base", "model", "engine"], crates: &["polars", "csv", "xxhash_rust"] },
-    Layer { name: "audit", uses: &["base", "model", "kinematics", "carry", "engine", "store"], crates: &[] },
+    Layer { name: "audit", uses: &["base", "stats", "model", "kinematics", "carry", "engine", "store"], crates: &[] },
     Layer { name: "rating", uses: &["base", "stats", "model", "store"], crates: &["libm"] },
     Layer { name: "report", uses: &["base", "stats", "model", "engine", "store", "rating"], crates: &["plotters", "minijinja"] },
     Layer {
