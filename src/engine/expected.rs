@@ -19,7 +19,7 @@ pub struct Expected {
 const BAND_SIGMAS: f64 = 6.0;
 /// A piece of path is halved while the needed speed falls by more than this many sigmas in it, counted in the bulk of the
 /// distribution only, to this depth.
-const PIECE_SIGMAS: f64 = 1.25;
+const PIECE_SIGMAS: f64 = 0.75;
 const BULK_SIGMAS: f64 = 3.0;
 const PIECE_DEPTH: u32 = 6;
 
